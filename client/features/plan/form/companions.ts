@@ -1,0 +1,44 @@
+import type { Change } from '../draft/draft-state.ts'
+import { getAt, type DraftDocument } from '../draft/paths.ts'
+
+/**
+ * Keys that only make sense together. Whoever changes one does not have to know of the other: it goes along in the
+ * same undo step.
+ */
+type Rule = (value: unknown, document: DraftDocument) => Change[]
+
+const drop = (path: string): Change => ({ path, value: undefined })
+
+const rules: Readonly<Record<string, Rule>> = {
+  // A single-ended signal has no common mode.
+  'sensor.wiring': (value) => (value === 'differential' ? [] : [drop('sensor.commonMode')]),
+  // What is the same source has no voltage of its own.
+  'shiftReference.same': (value) => (value === undefined ? [] : [drop('shiftReference.voltage')]),
+  'sensor.excitation.same': (value) => (value === undefined ? [] : [drop('sensor.excitation.voltage')]),
+  'converter.reference.same': (value, document) =>
+    value === 'positive'
+      ? [{ path: 'converter.reference.voltage', value: getAt(document, 'rails.positive') }]
+      : [],
+  'rails.positive': (value, document) =>
+    getAt(document, 'converter.reference.same') === 'positive'
+      ? [{ path: 'converter.reference.voltage', value }]
+      : [],
+  // Without a kind there is no filter to speak of; a corner asks for one.
+  'choose.filter.corner': (value, document) =>
+    value !== undefined && getAt(document, 'choose.filter.kind') === undefined
+      ? [{ path: 'choose.filter.kind', value: 'rc' }]
+      : [],
+  'choose.filter.kind': (value) => (value === 'rc' ? [] : [drop('choose.filter.corner')]),
+}
+
+export const companionsOf = (path: string, value: unknown, document: DraftDocument): Change[] =>
+  rules[path]?.(value, document) ?? []
+
+/** Fields that do not apply as the draft stands; they are left out of the form unless something stands in them. */
+export function appliesTo(path: string, document: DraftDocument): boolean {
+  if (getAt(document, path) !== undefined) return true
+  if (path === 'sensor.commonMode') return getAt(document, 'sensor.wiring') === 'differential'
+  if (path === 'shiftReference.voltage') return getAt(document, 'shiftReference.same') === undefined
+  if (path === 'sensor.excitation.voltage') return getAt(document, 'sensor.excitation.same') === undefined
+  return true
+}

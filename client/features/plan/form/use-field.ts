@@ -1,0 +1,36 @@
+import { useMemo } from 'react'
+import { getAt } from '../draft/paths.ts'
+import { usePlanner } from '../planner-context.tsx'
+import { nodeOfPath } from '../words/nodes.ts'
+import { fieldId } from '../words/steps.ts'
+import { companionsOf } from './companions.ts'
+import { fieldAt, type FieldSpec } from './introspect.ts'
+
+/** A key of the design as a control needs it: what it is, what stands in it, what is wrong with it. */
+export function useField(path: string) {
+  const { state, dispatch, faults, sensorKind, readOnly, setEditing } = usePlanner()
+  const spec: FieldSpec = useMemo(() => fieldAt(path, sensorKind), [path, sensorKind])
+  const fault = faults.get(path)
+  return {
+    spec,
+    id: fieldId(path),
+    value: getAt(state.document, path),
+    typed: state.typed[path],
+    error: fault ? `${capital(fault.reason)}. Accepted: ${fault.accepted}.` : undefined,
+    disabled: readOnly !== null,
+    type: (value: unknown, text: string, label: string) =>
+      dispatch({ type: 'type', path, value, text, label }),
+    misread: (text: string, reason: string, label: string) =>
+      dispatch({ type: 'misread', path, text, reason, label }),
+    choose: (value: unknown, label: string) =>
+      dispatch({
+        type: 'set',
+        changes: [{ path, value }, ...companionsOf(path, value, state.document)],
+        label,
+      }),
+    enter: () => setEditing(nodeOfPath(path)),
+    leave: () => dispatch({ type: 'leave', path }),
+  }
+}
+
+const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)

@@ -1,0 +1,203 @@
+import {
+  useCallback,
+  useEffect,
+  useMemo,
+  useRef,
+  useState,
+  useSyncExternalStore,
+  type ReactNode,
+} from 'react'
+import { useLocation, useNavigate } from 'react-router-dom'
+import { LevelDiagram } from '#client/components/drawings/level-diagram.tsx'
+import { Awaited, Failure } from '#client/components/states.tsx'
+import { TitleBlock, type TitleCell } from '#client/components/title-block.tsx'
+import { usePageTitle } from '#client/hooks/use-page-title.ts'
+import { announce } from '#client/lib/messages.ts'
+import { misreadFields } from './draft/draft-state.ts'
+import { numberAt, textAt } from './draft/paths.ts'
+import { ActionBar } from './frame/action-bar.tsx'
+import { FindingsColumn, findingsInShort } from './frame/findings-column.tsx'
+import { focusField } from './frame/focus-field.ts'
+import { StepLine } from './frame/step-line.tsx'
+import { usePlanKeys } from './frame/use-plan-keys.ts'
+import { PlannerProvider, type PlannerValue, type PlanPlace } from './planner-context.tsx'
+import type { PlanSession } from './session/plan-session.ts'
+import { isOpenQuestion, listFindings, pressing, toDraftPath } from './words/findings.ts'
+import { pathOfNode } from './words/nodes.ts'
+import { stepNumber, stepOfPath, steps, stepTitle, type StepId } from './words/steps.ts'
+import { StepForm } from './steps/step-form.tsx'
+import './plan.css'
+
+interface PlannerProps {
+  session: PlanSession
+  where: PlanPlace
+  /** null: the front page, the whole job in one sentence. */
+  step: StepId | null
+  stepHref(step: StepId): string
+  cells: TitleCell[]
+  readOnly: string | null
+  /** Stands between the title block and the steps: conflicts, lost connection. */
+  notice?: ReactNode
+}
+
+/** The plan with its steps: everything between the title block and the action bar, for visitors and channels alike. */
+export function Planner({ session, where, step, stepHref, cells, readOnly, notice }: PlannerProps) {
+  const value = usePlannerValue({ session, where, step, stepHref, readOnly })
+  const { state, planning, candidate, findings, stale, goTo } = value
+  const name = textAt(state.document, 'name')
+  usePageTitle(step ? `Step ${stepNumber(step)} of ${steps.length}: ${stepTitle(step)}` : 'Plan', name)
+  usePlanKeys(value)
+  useSpokenFindings(value)
+  const quantity = useMemo(
+    () => ({
+      name: textAt(state.document, 'sensor.quantity.name'),
+      unit: textAt(state.document, 'sensor.quantity.unit'),
+      low:
+        planning.planned?.design.sensor.quantity.low ?? numberAt(state.document, 'sensor.quantity.low') ?? 0,
+      high:
+        planning.planned?.design.sensor.quantity.high ??
+        numberAt(state.document, 'sensor.quantity.high') ??
+        1,
+    }),
+    [state.document, planning.planned],
+  )
+  const levels = candidate?.levels ?? []
+  const lastStage = levels.at(-2)?.node ?? null
+  return (
+    <PlannerProvider value={value}>
+      <TitleBlock cells={cells} />
+      {notice}
+      <StepLine />
+      <div className="plan-sheet sheet">
+        <p className="plan-count">
+          <a href="#plan-findings">{findingsInShort(findings)}</a>
+        </p>
+        <div className="plan-work">
+          {readOnly !== null && <p className="plan-read-only">{readOnly}</p>}
+          <StepForm />
+        </div>
+        <div className="plan-diagram">
+          {planning.status === 'failed' && (
+            <Failure
+              title={`The calculation failed: ${planning.message ?? ''}`}
+              safe="Nothing that was typed is lost."
+              onRetry={() => session.retry()}
+            />
+          )}
+          {!planning.planned && planning.status === 'computing' && (
+            <Awaited what="the first plan" onRetry={() => session.retry()} />
+          )}
+          <LevelDiagram
+            levels={levels}
+            quantity={quantity}
+            editing={value.editing}
+            stale={stale}
+            {...(planning.planned ? { rule: planning.planned.design.rules.room } : {})}
+            onGo={(node, mark) =>
+              goTo(pathOfNode(node, mark.endsWith('limit') ? 'region' : 'signal', lastStage))
+            }
+          />
+        </div>
+        <div id="plan-findings" className="plan-side">
+          <FindingsColumn />
+        </div>
+      </div>
+      <ActionBar />
+    </PlannerProvider>
+  )
+}
+
+function usePlannerValue({
+  session,
+  where,
+  step,
+  stepHref,
+  readOnly,
+}: Omit<PlannerProps, 'cells' | 'notice'>): PlannerValue {
+  const state = useSyncExternalStore(session.draft.subscribe, session.draft.getState)
+  const planning = useSyncExternalStore(session.planning.subscribe, session.planning.get)
+  const [editing, setEditing] = useState<string | null>(null)
+  const goTo = useGoTo(step, stepHref)
+  const sensorKind = textAt(state.document, 'sensor.kind')
+  const { planned } = planning
+  const chosen = planned?.plan.chosen ?? null
+  const candidate = chosen === null ? null : (planned?.plan.candidates[chosen] ?? null)
+  const findings = useMemo(
+    () => listFindings({ document: state.document, typed: state.typed, planning, candidate, sensorKind }),
+    [state.document, state.typed, planning, candidate, sensorKind],
+  )
+  const faults = useMemo(
+    () =>
+      new Map(
+        planning.faults
+          .filter((fault) => !isOpenQuestion(state.document, fault))
+          .map((fault) => [toDraftPath(fault.path), fault] as const),
+      ),
+    [planning.faults, state.document],
+  )
+  return {
+    state,
+    dispatch: session.draft.dispatch,
+    planning,
+    candidate,
+    chosen,
+    findings,
+    faults,
+    sensorKind,
+    quantity: {
+      name: textAt(state.document, 'sensor.quantity.name'),
+      unit: textAt(state.document, 'sensor.quantity.unit'),
+    },
+    stale:
+      planned !== null &&
+      (planning.status === 'refused' ||
+        planning.status === 'failed' ||
+        misreadFields(state.typed).length > 0),
+    readOnly,
+    editing,
+    setEditing,
+    step,
+    stepHref,
+    goTo,
+    retry: session.retry,
+    where,
+  }
+}
+
+/** Leads to a field: at once where it stands on this page, else by way of its step. */
+function useGoTo(step: StepId | null, stepHref: (step: StepId) => string) {
+  const navigate = useNavigate()
+  const location = useLocation()
+  const wanted: unknown = (location.state as { field?: unknown } | null)?.field
+  const reached = useRef<string | null>(null)
+  useEffect(() => {
+    if (typeof wanted !== 'string' || reached.current === location.key) return
+    reached.current = location.key
+    // The step's fields are there after this commit; the frame lets the route's own focus handling go first.
+    const frame = requestAnimationFrame(() => focusField(wanted))
+    return () => cancelAnimationFrame(frame)
+  }, [wanted, location.key])
+  return useCallback(
+    (path: string) => {
+      const home = stepOfPath(path)
+      if ((step === home || step === null) && focusField(path)) return
+      void navigate(stepHref(home), { state: { field: path } })
+    },
+    [navigate, step, stepHref],
+  )
+}
+
+/** Says what changed in the findings, once typing has paused and only if they did. */
+function useSpokenFindings({ findings }: PlannerValue) {
+  const work = pressing(findings)
+  const text = work[0]
+    ? `${findingsInShort(findings)}. ${[work[0].title, work[0].text].filter(Boolean).join('. ')}`
+    : findingsInShort(findings)
+  const said = useRef<string | null>(null)
+  useEffect(() => {
+    const first = said.current === null
+    if (said.current === text) return
+    said.current = text
+    if (!first) announce(text, 600)
+  }, [text])
+}

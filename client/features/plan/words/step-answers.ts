@@ -1,0 +1,85 @@
+import type { Candidate } from '#shared/design/plan.ts'
+import { formatNumber, formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
+import { upward } from '#shared/note/figures.ts'
+import { sensorKinds } from '#shared/sensors/index.ts'
+import { getAt, numberAt, textAt, type DraftDocument } from '../draft/paths.ts'
+import { pressing, type ShownFinding } from './findings.ts'
+import { steps, type StepId } from './steps.ts'
+
+/** What a step says under its name in the step line. */
+export interface StepAnswer {
+  id: StepId
+  text: string
+  /** `over` and `open` ask for work; `done` is complete. */
+  state: 'done' | 'over' | 'open' | 'tight'
+}
+
+interface Situation {
+  document: DraftDocument
+  findings: readonly ShownFinding[]
+  candidate: Candidate | null
+}
+
+export function answerSteps(situation: Situation): StepAnswer[] {
+  return steps.map(({ id }) => {
+    const own = pressing(situation.findings.filter((finding) => finding.step === id))
+    const over = own.filter(({ severity }) => severity === 'over')
+    const open = own.filter(({ severity }) => severity === 'open')
+    if (id === 'review') return reviewAnswer(situation)
+    if (over.length > 0) return { id, state: 'over', text: counted(over.length, 'to put right') }
+    if (open.length > 0) return { id, state: 'open', text: counted(open.length, 'open') }
+    const text = words[id](situation.document, situation.candidate)
+    if (text === null) return { id, state: 'open', text: 'open' }
+    return { id, state: own.length > 0 ? 'tight' : 'done', text }
+  })
+}
+
+const counted = (count: number, what: string): string => `${count} ${what}`
+
+function reviewAnswer({ findings }: Situation): StepAnswer {
+  const waits = [
+    ...new Set(pressing(findings).map((finding) => steps.findIndex((step) => step.id === finding.step) + 1)),
+  ]
+  if (waits.length === 0) return { id: 'review', state: 'done', text: 'nothing open' }
+  return { id: 'review', state: 'open', text: `waits for ${waits.sort((a, b) => a - b).join(', ')}` }
+}
+
+type Words = (document: DraftDocument, candidate: Candidate | null) => string | null
+
+const rangeAt = (document: DraftDocument, path: string, unit: string): string | null => {
+  const low = numberAt(document, `${path}.low`)
+  const high = numberAt(document, `${path}.high`)
+  return low === null || high === null ? null : formatRange(low, high, unit, { unitOnce: true })
+}
+
+const percent = (fraction: number): string => formatQuantity(fraction, '', { display: 'percent', digits: 3 })
+
+const words: Record<Exclude<StepId, 'review'>, Words> = {
+  measurand: (document) => rangeAt(document, 'sensor.quantity', textAt(document, 'sensor.quantity.unit')),
+  sensor(document) {
+    const kind = sensorKinds.find((known) => known.kind === getAt(document, 'sensor.kind'))
+    if (!kind) return null
+    const range = rangeAt(document, 'sensor.output', 'V')
+    return range ?? kind.title.toLowerCase()
+  },
+  converter(document) {
+    const range = rangeAt(document, 'converter.input', 'V')
+    const bits = numberAt(document, 'converter.bits')
+    return range === null || bits === null ? range : `${range}, ${formatNumber(bits)} bit`
+  },
+  stages: (_, candidate) => (candidate ? candidate.title : 'no arrangement'),
+  parts(document) {
+    const series = textAt(document, 'parts.resistors.series') || 'E96'
+    return `${series}, ${percent(numberAt(document, 'parts.resistors.tolerance') ?? 0.001)}`
+  },
+  filter: (_, candidate) =>
+    candidate?.filter?.kind === 'rc'
+      ? `corner ${formatQuantity(candidate.filter.corner, 'Hz', { digits: 3 })}`
+      : 'none',
+  errors(document, candidate) {
+    const error = candidate?.realised?.endpointErrorQuantity
+    if (!error) return 'not known'
+    const unit = textAt(document, 'sensor.quantity.unit')
+    return `ends off by ${upward(Math.max(Math.abs(error.low), Math.abs(error.high)), unit)}`
+  },
+}

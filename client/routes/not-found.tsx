@@ -1,0 +1,7 @@
+import { NotFound } from '#client/components/not-found.tsx'
+import { usePageTitle } from '#client/hooks/use-page-title.ts'
+
+export function NotFoundPage() {
+  usePageTitle('Not found')
+  return <NotFound />
+}

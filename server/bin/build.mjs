@@ -1,0 +1,5 @@
+import { ensureBuild, ensureDeps } from './setup.mjs'
+
+ensureDeps()
+ensureBuild('client', { force: true })
+ensureBuild('server', { force: true })

@@ -1,0 +1,6 @@
+import { ensureBuild, ensureDeps } from './setup.mjs'
+
+ensureDeps()
+ensureBuild('client')
+ensureBuild('server')
+await import('../../dist/server/index.js')

@@ -1,0 +1,211 @@
+import {
+  Circle,
+  ClipPath,
+  Defs,
+  G,
+  Line,
+  Path,
+  Polygon,
+  Polyline,
+  Rect,
+  Svg,
+  Text,
+} from '@react-pdf/renderer'
+import type { ReactNode } from 'react'
+import { hatchLines } from '#shared/drawings/hatch.ts'
+import type { Box, LineShape, Shape, TextShape } from '#shared/drawings/shapes.ts'
+import { linePaint, textPaint, type Hatch } from '#shared/drawings/styles.ts'
+import { textBox } from '#shared/drawings/text-width.ts'
+import { TEXT } from './fonts.ts'
+import { toPrintable } from './glyphs.ts'
+import { paints, textColours, type Paint } from './shape-colours.ts'
+import { colours } from './theme.ts'
+
+/** The smallest type on paper, pt. */
+const SMALLEST = 7
+
+interface DrawingProps {
+  shapes: readonly Shape[]
+  /** Part of the drawing's own coordinates that is shown, px. */
+  box: Box
+  /** Width on the sheet, pt; the height follows. */
+  width: number
+}
+
+/** Paints the shapes of a drawing in print colours. Line widths and type stay readable whatever the scale. */
+export function Drawing({ shapes, box, width }: DrawingProps): ReactNode {
+  const scale = width / box.width
+  return (
+    <Svg
+      width={width}
+      height={box.height * scale}
+      viewBox={`${round(box.x)} ${round(box.y)} ${round(box.width)} ${round(box.height)}`}
+    >
+      {shapes.map((shape, index) => (
+        <Painted key={index} id={`clip${index}`} shape={shape} scale={scale} box={box} />
+      ))}
+    </Svg>
+  )
+}
+
+interface PaintedProps {
+  id: string
+  shape: Shape
+  scale: number
+  box: Box
+}
+
+function Painted({ id, shape, scale, box }: PaintedProps): ReactNode {
+  if (shape.type === 'text') return <Lettering shape={shape} scale={scale} />
+  const paint = linePaint(shape.style)
+  const colour = paints[shape.style]
+  const base = {
+    fill: closed(shape) && (paint.filled || colour.fill) ? (colour.fill ?? 'none') : 'none',
+    ...(paint.width > 0 && colour.stroke ? { stroke: colour.stroke, strokeWidth: paint.width } : {}),
+    ...(paint.dash ? { strokeDasharray: paint.dash.join(' ') } : {}),
+    ...(paint.opacity === undefined ? {} : { opacity: paint.opacity }),
+    strokeLinejoin: 'round' as const,
+  }
+  const hatch = paint.hatch ? (
+    <Hatching id={id} shape={shape} hatch={paint.hatch} colour={colour} box={box} />
+  ) : null
+  switch (shape.type) {
+    case 'line':
+      return (
+        <Line x1={round(shape.x1)} y1={round(shape.y1)} x2={round(shape.x2)} y2={round(shape.y2)} {...base} />
+      )
+    case 'polyline': {
+      const points = shape.points.map(([x, y]) => `${round(x)},${round(y)}`).join(' ')
+      return shape.closed ? <Polygon points={points} {...base} /> : <Polyline points={points} {...base} />
+    }
+    case 'rect':
+      if (!(shape.width > 0 && shape.height > 0)) return null
+      return (
+        <G>
+          <Rect
+            x={round(shape.x)}
+            y={round(shape.y)}
+            width={round(shape.width)}
+            height={round(shape.height)}
+            {...base}
+          />
+          {hatch}
+        </G>
+      )
+    case 'path':
+      return (
+        <G>
+          <Path d={shape.d} {...base} />
+          {hatch}
+        </G>
+      )
+    case 'circle':
+      return <Circle cx={round(shape.cx)} cy={round(shape.cy)} r={round(shape.r)} {...base} />
+  }
+}
+
+const closed = (shape: Exclude<Shape, TextShape>): boolean => {
+  if (shape.type === 'polyline') return shape.closed === true
+  if (shape.type === 'path') return /z\s*$/i.test(shape.d)
+  return shape.type !== 'line'
+}
+
+const hatchings: Record<Hatch, { spacing: number; angles: number[]; width: number; opacity: number }> = {
+  room: { spacing: 4.5, angles: [45], width: 0.8, opacity: 0.5 },
+  poche: { spacing: 3, angles: [135], width: 1, opacity: 1 },
+  over: { spacing: 3.2, angles: [45, 135], width: 0.8, opacity: 1 },
+}
+
+interface HatchingProps {
+  id: string
+  shape: Exclude<Shape, TextShape>
+  hatch: Hatch
+  colour: Paint
+  box: Box
+}
+
+/** Hatching as lines, since PDF drawings of this library have no patterns; cut by the shape itself if it is a path. */
+function Hatching({ id, shape, hatch, colour, box }: HatchingProps): ReactNode {
+  const { spacing, angles, width, opacity } = hatchings[hatch]
+  const area: Box | null =
+    shape.type === 'rect' ? shape : shape.type === 'path' ? (boxOfPath(shape.d) ?? box) : null
+  if (!area) return null
+  const lines = angles
+    .flatMap((angle) => hatchLines(area, spacing, angle))
+    .map((line: LineShape, index) => (
+      <Line
+        key={index}
+        x1={round(line.x1)}
+        y1={round(line.y1)}
+        x2={round(line.x2)}
+        y2={round(line.y2)}
+        stroke={colour.hatch ?? colours.hair}
+        strokeWidth={width}
+        strokeOpacity={opacity}
+      />
+    ))
+  if (shape.type !== 'path') return <G>{lines}</G>
+  return (
+    <G>
+      <Defs>
+        <ClipPath id={id}>
+          <Path d={shape.d} />
+        </ClipPath>
+      </Defs>
+      <G clipPath={`url(#${id})`}>{lines}</G>
+    </G>
+  )
+}
+
+/** Box of a path of absolute M, L, H, V and Z commands; null for any other, which then hatches the whole drawing. */
+function boxOfPath(d: string): Box | null {
+  if (/[^MLHVZ\d\s.,e+-]/.test(d)) return null
+  const xs: number[] = []
+  const ys: number[] = []
+  for (const [, command = '', body = ''] of d.matchAll(/([MLHV])([^MLHVZ]*)/g)) {
+    const numbers = (body.match(/-?\d*\.?\d+(?:e[-+]?\d+)?/g) ?? []).map(Number)
+    numbers.forEach((value, index) => {
+      if (command === 'H' || (command !== 'V' && index % 2 === 0)) xs.push(value)
+      else ys.push(value)
+    })
+  }
+  if (xs.length === 0 || ys.length === 0) return null
+  const [x, y] = [Math.min(...xs), Math.min(...ys)]
+  return { x, y, width: Math.max(...xs) - x, height: Math.max(...ys) - y }
+}
+
+/** Nearest weight that the note's family is registered in. */
+const toWeight = (weight: number): 400 | 500 | 600 => (weight < 450 ? 400 : weight < 575 ? 500 : 600)
+
+function Lettering({ shape, scale }: { shape: TextShape; scale: number }): ReactNode {
+  const { size, weight } = textPaint(shape.style)
+  const fontSize = Math.max(size * (shape.scale ?? 1), SMALLEST / scale)
+  const halo = shape.on ? textBox(shape) : null
+  const turn = shape.turned ? { transform: `rotate(-90 ${round(shape.x)} ${round(shape.y)})` } : {}
+  return (
+    <G>
+      {halo ? (
+        <Rect
+          x={round(halo.x - 1)}
+          y={round(halo.y)}
+          width={round(halo.width + 2)}
+          height={round(halo.height)}
+          fill={shape.on === 'wash' ? colours.woadWash : colours.sheet}
+        />
+      ) : null}
+      <G {...turn}>
+        <Text
+          x={round(shape.x)}
+          y={round(shape.y)}
+          fill={textColours[shape.style]}
+          textAnchor={shape.anchor}
+          style={{ fontFamily: TEXT, fontSize, fontWeight: toWeight(weight) }}
+        >
+          {toPrintable(shape.text)}
+        </Text>
+      </G>
+    </G>
+  )
+}
+
+const round = (value: number): number => Math.round(value * 100) / 100

@@ -1,0 +1,15 @@
+import type { Plan } from '#shared/design/plan.ts'
+import type { DesignDocument } from '#shared/design/schema.ts'
+import type { NoteContext } from '#shared/note/types.ts'
+
+/** The computing that requests ask for. */
+export interface Engine {
+  /** Throws `design_refused` with the faults. */
+  read(design: unknown): DesignDocument
+  plan(document: DesignDocument): Promise<Plan>
+  /** Plans the design and makes its note, a PDF. */
+  note(document: DesignDocument, context: NoteContext): Promise<Buffer>
+  /** True on a demonstration server: notes say that names and figures are invented. */
+  readonly isDemo: boolean
+  close(): Promise<void>
+}

@@ -1,0 +1,7 @@
+export * from './forms.ts'
+export type { PairLimit, Pick, PickRequest, PickResult } from './request.ts'
+export { evaluateForm } from './evaluate.ts'
+export { COST } from './cost.ts'
+export { pickValues } from './pick-values.ts'
+export { idealValues } from './ideal.ts'
+export { wantedValue } from './wanted.ts'

@@ -1,0 +1,215 @@
+import { formRefs, type ValueForm } from './forms.ts'
+import { pairAllowed, type PairBounds, type PairTable, pairTable, priceTable } from './pair-table.ts'
+import { type Beta, type PairLegs, toProblem } from './problem.ts'
+import type { PairLimit } from './request.ts'
+import type { BetaTask, Task } from './search.ts'
+import type { Members, Slots } from './short-list.ts'
+import { listCosts, toValueList, type ValueList } from './value-list.ts'
+
+/** A form with its allowed values, ready to be searched for any target. */
+export interface Prepared {
+  task: Omit<Task, 'target'>
+  /** Demands on two resistors that no pair of the search can take care of. */
+  allows: ((values: Float64Array) => boolean) | null
+  /** True where a person fixed every value. */
+  fixed: boolean
+  /** A search starts with this error, as a fraction of the span: about one pick is that near. */
+  grain: number
+}
+
+/**
+ * Puts form, allowed values and demands into the shape of the search. Null where no pair of values is allowed.
+ *
+ * @throws RangeError where a resistor of the form has no list, or a demand names a resistor that the form has not
+ */
+export function prepare(
+  form: ValueForm,
+  lists: Record<string, readonly number[]>,
+  limits: readonly PairLimit[],
+  preferred: number,
+): Prepared | null {
+  const refs = formRefs(form)
+  const stray = limits.flatMap((limit) => limit.refs).find((ref) => !refs.includes(ref))
+  if (stray !== undefined) throw new RangeError(`A demand names ${stray}, which the arrangement has not`)
+  const allowed = refs.map((ref) => allowedValues(form, ref, lists[ref]))
+  if (allowed.some((list) => list.values.length === 0)) return null
+
+  const { alpha, beta, lines, ideal } = toProblem(form)
+  const constant = [alpha?.upper, beta.kind === 'pair' ? beta.legs.upper : null].find(
+    (leg) => typeof leg === 'number',
+  )
+  const all = [...allowed, toValueList([constant ?? Infinity]), toValueList([Infinity])]
+  const places = new Places(refs, all, preferred)
+
+  const firstBounds = alpha && boundsOf(limits, alpha.upper, alpha.lower)
+  const first = alpha ? places.pair(alpha, firstBounds, isPlain(alpha)) : places.nothing()
+  const second = places.beta(beta, limits, alpha !== null)
+  if (!first || !second) return null
+  const taken = [firstBounds, second.bounds]
+  const rest = limits.filter((limit) => !taken.some((bounds) => bounds?.from.includes(limit)))
+  const sizes = allowed.map((list) => list.values.length).sort((a, b) => b - a)
+  return {
+    task: {
+      slots: places.slots,
+      lines,
+      ideal,
+      first: first.members,
+      firstAbove: alpha?.above ?? 0,
+      firstBelow: alpha?.below ?? 0,
+      firstTable: first.table,
+      firstBounds,
+      hasFirst: alpha !== null,
+      second: second.members,
+      beta: second.task,
+    },
+    allows: rest.length > 0 ? crossCheck(refs, rest) : null,
+    fixed: (sizes[0] as number) === 1,
+    grain: 4 / ((sizes[0] as number) * (sizes[1] ?? 1)),
+  }
+}
+
+interface Bounds extends PairBounds {
+  from: readonly PairLimit[]
+}
+
+/** Finds slots by ref and tables by pair. */
+class Places {
+  readonly slots: Slots
+  private readonly constant: number
+  private readonly none: number
+
+  constructor(
+    refs: readonly string[],
+    private readonly lists: readonly ValueList[],
+    preferred: number,
+  ) {
+    this.constant = refs.length
+    this.none = refs.length + 1
+    this.slots = {
+      refs,
+      values: lists.map((list) => list.values),
+      // What stands for no part costs nothing.
+      costs: lists.map((list, slot) => (slot < refs.length ? listCosts(list, preferred) : FREE)),
+    }
+  }
+
+  nothing(): { members: Members; table: null } {
+    return { members: oneOf(this.none, this.none), table: null }
+  }
+
+  /** Members of a pair: those of its table, or a place for one at a time. Null where the bounds leave no pair. */
+  pair(
+    legs: PairLegs,
+    bounds: PairBounds | null,
+    tabled: boolean,
+  ): { members: Members; table: PairTable | null } | null {
+    const upperSlot = this.slotOf(legs.upper)
+    const lowerSlot = this.slotOf(legs.lower)
+    const [upper, lower] = [this.lists[upperSlot] as ValueList, this.lists[lowerSlot] as ValueList]
+    if (!tabled) {
+      if (bounds && !anyAllowed(upper, lower, bounds)) return null
+      return { members: oneOf(upperSlot, lowerSlot), table: null }
+    }
+    const table = pairTable(upper, lower, legs.above, legs.below, bounds)
+    if (table.ratios.length === 0) return null
+    priceTable(
+      table,
+      this.slots.costs[upperSlot] as Float64Array,
+      this.slots.costs[lowerSlot] as Float64Array,
+    )
+    return { members: { upperSlot, lowerSlot, upper: table.upper, lower: table.lower }, table }
+  }
+
+  beta(
+    beta: Beta,
+    limits: readonly PairLimit[],
+    hasFirst: boolean,
+  ): { members: Members; task: BetaTask; bounds: Bounds | null } | null {
+    if (beta.kind === 'shared') {
+      const { own, series, divider } = beta
+      const members = oneOf(this.none, this.slotOf(beta.ref))
+      return { members, task: { kind: 'shared', own, series, divider }, bounds: null }
+    }
+    if (beta.kind === 'loaded') {
+      const bounds = boundsOf(limits, beta.upper, beta.lower)
+      const found = this.pair({ upper: beta.upper, lower: beta.lower, above: 0, below: 0 }, bounds, false)
+      return found && { members: found.members, task: { kind: 'loaded', bounds }, bounds }
+    }
+    const { legs, divider, f0, f1 } = beta
+    const bounds = boundsOf(limits, legs.upper, legs.lower)
+    // Beside a first pair the second is asked thousands of times: its table pays even with a series resistance.
+    const found = this.pair(legs, bounds, hasFirst || isPlain(legs))
+    if (!found) return null
+    const task: BetaTask = found.table
+      ? { kind: 'table', table: found.table, divider, f0, f1 }
+      : { kind: 'legs', above: legs.above, below: legs.below, divider, f0, f1, bounds }
+    return { members: found.members, task, bounds }
+  }
+
+  private slotOf(leg: string | number): number {
+    return typeof leg === 'number' ? this.constant : this.slots.refs.indexOf(leg)
+  }
+}
+
+const FREE = new Float64Array(1)
+
+/** The ratio is one of the resistors alone, so that one table serves all designs. */
+function isPlain(legs: PairLegs): boolean {
+  return legs.above === 0 && legs.below === 0
+}
+
+/** Room for one pair at a time. */
+function oneOf(upperSlot: number, lowerSlot: number): Members {
+  return { upperSlot, lowerSlot, upper: new Uint16Array(1), lower: new Uint16Array(1) }
+}
+
+function allowedValues(form: ValueForm, ref: string, values: readonly number[] | undefined): ValueList {
+  if (!values) throw new RangeError(`No list of allowed values for ${ref}`)
+  if (form.kind !== 'gain-single' || ref !== 'Rg') return toValueList(values)
+  const { gainMinimum = -Infinity, gainMaximum = Infinity, stageGain = 1 } = form
+  if (gainMinimum === -Infinity && gainMaximum === Infinity) return toValueList(values)
+  return toValueList(
+    values.filter((value) => {
+      const gain = stageGain * (1 + form.k / value)
+      return gain >= gainMinimum && gain <= gainMaximum
+    }),
+  )
+}
+
+function concerns(limit: PairLimit, one: string | number, other: string | number): boolean {
+  return limit.refs.includes(one as string) && limit.refs.includes(other as string)
+}
+
+/** All demands on one pair together; null where there is none. */
+function boundsOf(limits: readonly PairLimit[], one: string | number, other: string | number): Bounds | null {
+  const from = limits.filter((limit) => concerns(limit, one, other))
+  if (from.length === 0) return null
+  return { ...merge(from), from }
+}
+
+function merge(limits: readonly PairLimit[]): PairBounds {
+  return {
+    minimumSum: Math.max(...limits.map((limit) => limit.minimumSum ?? 0)),
+    minimumParallel: Math.max(...limits.map((limit) => limit.minimumParallel ?? 0)),
+    maximumParallel: Math.min(...limits.map((limit) => limit.maximumParallel ?? Infinity)),
+  }
+}
+
+function anyAllowed(upper: ValueList, lower: ValueList, bounds: PairBounds): boolean {
+  return upper.values.some((a) => lower.values.some((b) => pairAllowed(a, b, bounds)))
+}
+
+function crossCheck(
+  refs: readonly string[],
+  limits: readonly PairLimit[],
+): (values: Float64Array) => boolean {
+  const checks = limits.map((limit) => ({
+    one: refs.indexOf(limit.refs[0]),
+    other: refs.indexOf(limit.refs[1]),
+    bounds: merge([limit]),
+  }))
+  return (values) =>
+    checks.every(({ one, other, bounds }) =>
+      pairAllowed(values[one] as number, values[other] as number, bounds),
+    )
+}

@@ -1,0 +1,24 @@
+import type { Resistor } from '../types.ts'
+import { stampAdmittance } from './admittance.ts'
+import type { ElementKind } from './element-kind.ts'
+import { toSpiceNumber } from './spice-number.ts'
+
+export const resistor: ElementKind<Resistor> = {
+  letter: 'R',
+  nodes: (e) => [e.a, e.b],
+  hasBranch: false,
+  dcPaths: (e) => [[e.a, e.b]],
+  stamp: (e, stamper) => stampAdmittance(stamper, e.a, e.b, 1 / e.value),
+  ports: { value: (e, stamper) => stampAdmittance(stamper, e.a, e.b, -1 / e.value ** 2) },
+  withValue: (e, value) => {
+    if (!(value > 0) || !Number.isFinite(value)) throw new RangeError(messageFor(e.ref, value))
+    return { ...e, value }
+  },
+  check: (e) => (e.value > 0 ? null : messageFor(e.ref, e.value)),
+  loop: null,
+  toSpice: (e) => [`${e.ref} ${e.a} ${e.b} ${toSpiceNumber(e.value)}`],
+  symbol: 'resistor',
+}
+
+const messageFor = (ref: string, value: number) =>
+  `${ref} is ${value} Ω; a resistor needs a finite value above 0 Ω`

@@ -1,0 +1,106 @@
+import { z } from 'zod'
+import type { SourceVariable } from '#shared/analysis/extremes.ts'
+import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
+
+/** The measurand: what is read, in its own unit. */
+export const quantitySchema = z.strictObject({
+  name: z.string().trim().min(1).max(60),
+  unit: z.string().max(16),
+  low: numberField('Measurand, low end', ''),
+  high: numberField('Measurand, high end', ''),
+})
+
+/** Keys that every sensor kind shares. */
+export const commonKeys = {
+  quantity: quantitySchema,
+  floating: z.boolean().default(false),
+  sourceResistance: nonNegative('Source resistance', 'Ω').default(0),
+  sourceMismatch: fraction('Source resistance mismatch').default(0),
+  capacitance: nonNegative('Source capacitance', 'F').default(0),
+  bandwidth: positive('Signal bandwidth', 'Hz').optional(),
+  bandLow: positive('Lowest frequency of interest', 'Hz').optional(),
+  leadResistance: nonNegative('Lead resistance', 'Ω').default(0),
+  leadMismatch: fraction('Lead mismatch').default(0),
+  accuracy: z
+    .strictObject({
+      zero: nonNegative('Zero error', '', 1).default(0),
+      span: nonNegative('Span error', '', 1).default(0),
+      linearity: nonNegative('Linearity error', '', 1).default(0),
+      repeatability: nonNegative('Repeatability', '', 1).default(0),
+      zeroDrift: nonNegative('Zero drift', '1/K', 1).default(0),
+      spanDrift: nonNegative('Span drift', '1/K', 1).default(0),
+      ageing: nonNegative('Ageing', '1/year', 1).default(0),
+    })
+    .prefault({}),
+  temperature: z
+    .strictObject({
+      low: numberField('Lowest sensor temperature', '°C', { min: -273, max: 3000 }),
+      high: numberField('Highest sensor temperature', '°C', { min: -273, max: 3000 }),
+    })
+    .optional(),
+}
+
+export const volts = (label: string) => numberField(label, 'V', { min: -1e4, max: 1e4 })
+
+export const voltsRange = (label: string) =>
+  z.strictObject({ low: volts(`${label}, low`), high: volts(`${label}, high`) })
+
+/** Straight line through the ends: electrical output at a measurand value. */
+export function alongLine(
+  quantity: { low: number; high: number },
+  ends: { low: number; high: number },
+  q: number,
+): number {
+  return ends.low + ((ends.high - ends.low) * (q - quantity.low)) / (quantity.high - quantity.low)
+}
+
+interface Accuracy {
+  zero: number
+  span: number
+  linearity: number
+  repeatability: number
+  zeroDrift: number
+  spanDrift: number
+  ageing: number
+}
+
+/**
+ * Sensor errors as source variables around a nominal value [V]: zero and its drift, span and its drift (pivot at
+ * quantity.low), linearity and repeatability. Limits are fractions of the output span; common practice.
+ */
+export function accuracyVariables(
+  accuracy: Accuracy,
+  at: { value: number; low: number; span: number; temperatureSpan: number },
+  ref: string,
+): SourceVariable[] {
+  const size = Math.abs(at.span)
+  const travel = Math.abs(at.value - at.low)
+  const limits: [string, number][] = [
+    ['sensor.zero', (accuracy.zero + accuracy.zeroDrift * at.temperatureSpan) * size],
+    ['sensor.span', (accuracy.span + accuracy.spanDrift * at.temperatureSpan) * travel],
+    ['sensor.linearity', accuracy.linearity * size],
+    ['sensor.repeatability', accuracy.repeatability * size],
+  ]
+  return limits
+    .filter(([, limit]) => limit > 0)
+    .map(([id, limit]) => ({
+      id,
+      nominal: 0,
+      low: -limit,
+      high: limit,
+      injections: [{ ref, port: 'value' as const, scale: 1 }],
+    }))
+}
+
+/** Resistance per leg and its ± fraction, from the source's and the lead's own figures. */
+export function legResistance(sensor: {
+  sourceResistance: number
+  sourceMismatch: number
+  leadResistance: number
+  leadMismatch: number
+}): { value: number; relative: number } {
+  const value = sensor.sourceResistance + sensor.leadResistance
+  const mismatch =
+    sensor.sourceResistance * sensor.sourceMismatch + sensor.leadResistance * sensor.leadMismatch
+  return { value, relative: value > 0 ? mismatch / value / 2 : 0 }
+}

@@ -1,0 +1,103 @@
+import { readdirSync } from 'node:fs'
+import { basename, join } from 'node:path'
+import tailwindcss from '@tailwindcss/vite'
+import react from '@vitejs/plugin-react'
+import type { Plugin } from 'vite'
+import { defineConfig } from 'vitest/config'
+
+const root = import.meta.dirname
+const serverAddresses = /^\/(api\/|healthz$|readyz$)/
+
+/** The built server's files: the application, the command line, and what runs in worker threads of its own. */
+function serverEntries(): Record<string, string> {
+  const files = readdirSync(join(root, 'server'), { recursive: true, encoding: 'utf8' })
+  const workers = files.filter((file) => file.endsWith('-worker.ts'))
+  return {
+    index: join(root, 'server/index.ts'),
+    plan: join(root, 'server/plan-command.ts'),
+    ...Object.fromEntries(workers.map((file) => [basename(file, '.ts'), join(root, 'server', file)])),
+  }
+}
+
+/**
+ * In development one process serves pages and API: the server's code is loaded through Vite, and loaded again by the
+ * first request after one of its files changed.
+ */
+function developmentServer(): Plugin {
+  type Application = Awaited<ReturnType<typeof import('./server/application.ts').openApplication>>
+  return {
+    name: 'development-server',
+    apply: (_, { command }) => command === 'serve' && !process.env.VITEST,
+    configureServer(vite) {
+      let loaded: unknown = null
+      let application: Promise<Application> | null = null
+      const current = async (): Promise<Application> => {
+        const module = await vite.ssrLoadModule(join(root, 'server/application.ts'))
+        if (module !== loaded || !application) {
+          const previous = application
+          loaded = module
+          application = (async () => {
+            await previous?.then((old) => old.close()).catch(() => undefined)
+            return (module as typeof import('./server/application.ts')).openApplication(process.env)
+          })()
+        }
+        return application
+      }
+      vite.middlewares.use((request, response, next) => {
+        if (!serverAddresses.test((request.url ?? '').split('?')[0] ?? '')) return next()
+        current().then(({ app }) => app(request, response), next)
+      })
+    },
+  }
+}
+
+export default defineConfig(({ isSsrBuild }) => ({
+  root: join(root, 'client'),
+  cacheDir: join(root, 'node_modules/.vite'),
+  plugins: isSsrBuild ? [] : [react(), tailwindcss(), developmentServer()],
+  worker: { format: 'es' as const },
+  build: {
+    outDir: join(root, isSsrBuild ? 'dist/server' : 'dist/client'),
+    emptyOutDir: true,
+    target: isSsrBuild ? 'node20' : 'es2022',
+    sourcemap: Boolean(isSsrBuild),
+    reportCompressedSize: false,
+    ...(isSsrBuild ? { ssr: true, rolldownOptions: { input: serverEntries() } } : {}),
+  },
+  server: { host: '127.0.0.1', port: Number(process.env.PORT ?? 4310), strictPort: true },
+  test: {
+    reporters: ['default'],
+    coverage: { provider: 'v8' as const, reportsDirectory: join(root, 'coverage') },
+    projects: [
+      {
+        extends: true as const,
+        root,
+        test: {
+          name: 'unit',
+          include: ['tests/shared/**/*.test.{ts,tsx}', 'tests/client/**/*.test.{ts,tsx}'],
+        },
+      },
+      {
+        extends: true as const,
+        root,
+        test: {
+          name: 'server',
+          include: ['tests/server/**/*.test.{ts,tsx}'],
+          testTimeout: 20_000,
+          hookTimeout: 30_000,
+        },
+      },
+      {
+        extends: true as const,
+        root,
+        test: {
+          name: 'browser',
+          include: ['tests/e2e/**/*.test.ts'],
+          testTimeout: 60_000,
+          hookTimeout: 60_000,
+          fileParallelism: false,
+        },
+      },
+    ],
+  },
+}))
