@@ -59,9 +59,11 @@ export default defineConfig(({ isSsrBuild }) => ({
   build: {
     outDir: join(root, isSsrBuild ? 'dist/server' : 'dist/client'),
     emptyOutDir: true,
+    copyPublicDir: !isSsrBuild,
     target: isSsrBuild ? 'node20' : 'es2022',
     sourcemap: Boolean(isSsrBuild),
     reportCompressedSize: false,
+    chunkSizeWarningLimit: 1500,
     ...(isSsrBuild ? { ssr: true, rolldownOptions: { input: serverEntries() } } : {}),
   },
   server: { host: '127.0.0.1', port: Number(process.env.PORT ?? 4310), strictPort: true },
@@ -83,8 +85,8 @@ export default defineConfig(({ isSsrBuild }) => ({
         test: {
           name: 'server',
           include: ['tests/server/**/*.test.{ts,tsx}'],
-          testTimeout: 20_000,
-          hookTimeout: 30_000,
+          testTimeout: 60_000,
+          hookTimeout: 60_000,
         },
       },
       {

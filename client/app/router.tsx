@@ -42,6 +42,8 @@ export const routes: RouteObject[] = [
   {
     path: '/',
     element: <RootLayout />,
+    // The first page is loaded while nothing stands yet; it is there within a few hundred milliseconds.
+    hydrateFallbackElement: <></>,
     errorElement: <ErrorPage framed />,
     children: [
       {

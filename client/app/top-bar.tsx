@@ -59,7 +59,7 @@ export function TopBar() {
         )}
       </div>
       {/* Menus open here, so that they lie within a landmark. */}
-      <div id="menus" />
+      <div id="menus" className="absolute" />
     </header>
   )
 }
@@ -111,14 +111,11 @@ function AccountMenu({ session }: { session: Session }) {
       <MenuRule />
       <MenuLink to={paths.preferences}>Units and keys</MenuLink>
       <MenuItem
-        onSelect={() =>
-          signOut.mutate(undefined, {
-            onSuccess: () => {
-              void navigate(paths.front)
-              notify('You are signed out.')
-            },
-          })
-        }
+        onSelect={() => {
+          // First away from pages that ask for an account, or these would lead to the sign-in page.
+          void navigate(paths.front)
+          signOut.mutate(undefined, { onSuccess: () => notify('You are signed out.') })
+        }}
       >
         Sign out
       </MenuItem>

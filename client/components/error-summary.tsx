@@ -9,9 +9,13 @@ export interface FormError {
 /** What is wrong with a form, in the words that stand beside its fields; takes focus when it appears. */
 export function ErrorSummary({ errors, attempt }: { errors: readonly FormError[]; attempt: number }) {
   const element = useRef<HTMLDivElement>(null)
+  const focusedFor = useRef(0)
+  // The errors may be rendered after the attempt was counted.
   useEffect(() => {
-    if (attempt > 0) element.current?.focus()
-  }, [attempt])
+    if (attempt === focusedFor.current || !element.current) return
+    focusedFor.current = attempt
+    element.current.focus()
+  })
   if (errors.length === 0) return null
   return (
     <div

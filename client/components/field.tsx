@@ -20,7 +20,8 @@ interface FrameProps extends FieldFrame {
   notes?: ReactNode
 }
 
-/** Label, control, and what stands under it; `describedBy` names the lines for assistive technology. */
+/**
+ * Label, control, and what stands under it, in elements that may also stand inside a sentence; `describedBy` names the lines for assistive technology. */
 export function Field({
   id,
   label,
@@ -34,8 +35,8 @@ export function Field({
 }: FrameProps) {
   const inline = layout === 'inline'
   return (
-    <div className={`min-w-0 ${className ?? ''}`}>
-      <div className={inline ? 'inline-flex items-center gap-2' : 'grid gap-1'}>
+    <span className={`block min-w-0 ${className ?? ''}`}>
+      <span className={inline ? 'inline-flex items-center gap-2' : 'grid gap-1'}>
         <label htmlFor={id} className={hideLabel ? 'sr-only' : inline ? 'text-13 text-ink-2' : 'field-label'}>
           {label}
         </label>
@@ -45,7 +46,7 @@ export function Field({
           </span>
         )}
         {children}
-      </div>
+      </span>
       {help !== undefined && inline && (
         <span id={`${id}-help`} className="field-note">
           {help}
@@ -53,11 +54,11 @@ export function Field({
       )}
       {notes}
       {error !== undefined && error !== null && error !== '' && (
-        <p id={`${id}-error`} className="mt-1 text-12 font-value text-minium">
+        <span id={`${id}-error`} className="mt-1 block text-12 font-value text-minium">
           {error}
-        </p>
+        </span>
       )}
-    </div>
+    </span>
   )
 }
 

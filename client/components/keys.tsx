@@ -56,17 +56,18 @@ export const keyTable: readonly { place: string; keys: readonly { keys: string; 
   },
 ]
 
-export function KeyTables() {
+/** `level` of the headings: below the title that stands over them. */
+export function KeyTables({ level: Heading }: { level: 'h2' | 'h3' }) {
   return (
     <div className="grid gap-x-8 gap-y-5 sm:grid-cols-2">
       {keyTable.map((section) => (
         <section key={section.place}>
-          <h3 className="border-b border-frame pb-1">{section.place}</h3>
+          <Heading className="border-b border-frame pb-1 text-14">{section.place}</Heading>
           <dl className="ruled">
             {section.keys.map((entry) => (
               <div
                 key={entry.keys + entry.act}
-                className="grid grid-cols-[8.5rem_1fr] items-baseline gap-2 py-1 text-13"
+                className="grid grid-cols-[7.5rem_1fr] items-baseline gap-2 py-1 text-13"
               >
                 <dt>
                   <Keys of={entry.keys} />
@@ -83,8 +84,8 @@ export function KeyTables() {
 
 export function KeysDialog({ open, onClose }: { open: boolean; onClose(): void }) {
   return (
-    <Dialog open={open} onClose={onClose} title="Keys">
-      <KeyTables />
+    <Dialog open={open} onClose={onClose} title="Keys" wide>
+      <KeyTables level="h3" />
       <p className="mt-4 text-12 text-ink-2">
         Single letters work only while a list or a drawing has focus. They can be turned off under{' '}
         <i>Units and keys</i>.

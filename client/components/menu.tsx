@@ -65,8 +65,8 @@ export function MenuLink({ to, children }: { to: string; children: ReactNode }) 
 interface MenuChoiceProps<T extends string> {
   label: string
   value: T
-  options: readonly { value: T; label: string }[]
-  onChange(value: T): void
+  options: readonly { value: NoInfer<T>; label: string }[]
+  onChange(value: NoInfer<T>): void
 }
 
 /** One of several, chosen inside a menu. */

@@ -11,8 +11,8 @@ export interface SelectOption<T extends string> {
 interface SelectFieldProps<T extends string> extends FieldFrame {
   id?: string
   value: T
-  options: readonly SelectOption<T>[]
-  onChange(value: T): void
+  options: readonly SelectOption<NoInfer<T>>[]
+  onChange(value: NoInfer<T>): void
   notes?: ReactNode
 }
 

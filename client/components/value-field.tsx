@@ -148,11 +148,11 @@ export function ValueField(props: ValueFieldProps) {
       id={id}
       error={error}
       notes={
-        <p id={`${id}-echo`} className="field-note mt-0.5 empty:hidden">
+        <span id={`${id}-echo`} className="field-note mt-0.5 block empty:hidden">
           {asks && <Question choices={reading.choices} reason={reading.reason} onTake={take} />}
           {!asks && echo !== null && <>Read as {echo}</>}
           {!asks && echo === null && !error && hint}
-        </p>
+        </span>
       }
     >
       <span
@@ -167,7 +167,7 @@ export function ValueField(props: ValueFieldProps) {
           autoCapitalize="none"
           spellCheck={false}
           placeholder={props.placeholder}
-          value={isShownAsValue ? textOf(value, fieldUnit) : text}
+          value={isShownAsValue ? textOf(Number(value.toPrecision(5)), fieldUnit) : text}
           disabled={disabled}
           required={required}
           aria-invalid={error || asks ? true : undefined}

@@ -64,7 +64,12 @@ export function ChannelsPage() {
               label={`Order: ${orders.find((o) => o.value === order)?.label.toLowerCase() ?? ''}`}
               align="end"
             >
-              <MenuChoice label="Order of the list" value={order} options={orders} onChange={setOrder} />
+              <MenuChoice<Order>
+                label="Order of the list"
+                value={order}
+                options={orders}
+                onChange={setOrder}
+              />
             </Menu>
             {add}
           </>

@@ -18,7 +18,7 @@ export function HelpKeysPage() {
         }
       />
       <div className="sheet mx-5 mb-6 max-w-5xl px-5 py-5 max-sm:mx-3 max-sm:px-3">
-        <KeyTables />
+        <KeyTables level="h2" />
       </div>
     </>
   )

@@ -62,7 +62,7 @@ const cell = 'border-t border-hair px-2 py-1.5 first:pl-3.5'
 
 function ProjectTable({ projects, workspaceId }: { projects: Project[] | undefined; workspaceId: string }) {
   return (
-    <div className="overflow-x-auto" role="region" aria-label="Projects" tabIndex={0}>
+    <div className="relative overflow-x-auto" role="region" aria-label="Projects" tabIndex={0}>
       <table className="w-full min-w-[36rem] border-collapse text-13">
         <thead>
           <tr>

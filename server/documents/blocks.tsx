@@ -15,13 +15,12 @@ interface HeadingProps {
   id?: string
 }
 
+/** A place that links inside the file lead to, and its entry in the outline. The outline takes any printable sign. */
+export const toAnchor = (id: string, title: string) => ({ id, bookmark: { title: toPrintable(title) } })
+
 export function Heading({ title, aside, id }: HeadingProps): ReactNode {
   return (
-    <View
-      style={styles.heading}
-      minPresenceAhead={70}
-      {...(id ? { id, bookmark: { title: toPrintable(title) } } : {})}
-    >
+    <View style={styles.heading} minPresenceAhead={70} {...(id ? toAnchor(id, title) : {})}>
       <Print style={styles.headingTitle}>{title}</Print>
       {aside ? <Print style={styles.headingAside}>{aside}</Print> : null}
     </View>
@@ -106,15 +105,29 @@ export function ListView({ items, fontSize }: { items: readonly string[]; fontSi
   )
 }
 
-export function StatementsView({ items }: { items: readonly Statement[] }): ReactNode {
+export function StatementsView({
+  items,
+  fontSize,
+}: {
+  items: readonly Statement[]
+  fontSize?: number
+}): ReactNode {
   return (
     <View style={{ marginTop: 3 }}>
       {items.map((item, index) => (
         <View key={index} style={[styles.item, { alignItems: 'flex-start' }]} wrap={false}>
-          <View style={{ width: 13, marginTop: 1.5 }}>
+          <View style={{ width: 13, marginTop: 1.2 }}>
             {item.state === 'unknown' ? <CautionMark /> : <StateMark state={item.state} />}
           </View>
-          <Print style={[styles.itemText, { color: stateColours[item.state] }]}>{item.text}</Print>
+          <Print
+            style={[
+              styles.itemText,
+              { color: stateColours[item.state] },
+              fontSize === undefined ? {} : { fontSize },
+            ]}
+          >
+            {item.text}
+          </Print>
         </View>
       ))}
     </View>

@@ -23,8 +23,8 @@ export function FirstSheetView({ first, figures }: FirstSheetProps): ReactNode {
   return (
     <View>
       <Print style={styles.title}>{first.title}</Print>
-      <Print style={styles.lead}>{first.purpose}</Print>
       {first.refusal ? <Refusal refusal={first.refusal} /> : null}
+      <Print style={styles.lead}>{first.purpose}</Print>
       {first.answers.length > 0 ? <Answers answers={first.answers} /> : null}
       <Notices first={first} />
       {first.levels ? (
@@ -107,7 +107,7 @@ function Notices({ first }: { first: FirstSheet }): ReactNode {
   if (items.length === 0) return null
   return (
     <View style={{ marginTop: 4 }}>
-      <StatementsView items={items} />
+      <StatementsView items={items} fontSize={7.4} />
       <More count={findings.length - FINDINGS} to="findings" />
     </View>
   )
@@ -119,7 +119,7 @@ function ClipRow({ caption, clips }: { caption: string; clips: readonly string[]
       <Print style={{ fontSize: 7.2, color: colours.ink3 }}>{caption}</Print>
       <View style={[styles.row, { paddingVertical: 1.5 }]}>
         {clips.map((text, index) => (
-          <View key={index} style={{ width: `${100 / Math.max(4, clips.length)}%`, paddingLeft: 14 }}>
+          <View key={index} style={{ width: `${100 / clips.length}%`, paddingLeft: 14 }}>
             <Print style={[styles.cell, { color: colours.ink2 }]}>{text}</Print>
           </View>
         ))}

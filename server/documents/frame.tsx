@@ -54,15 +54,15 @@ function Foot({ note, number, total }: { note: Note; number: number; total: numb
       <View>
         <TitleBlock rows={note.first.titleBlock} statement={note.first.statement} sheet={sheet} />
         <View style={styles.hashLine}>
-          <Print>{note.first.hashLine}</Print>
-          <Print>{note.foot.right}</Print>
+          <Print style={styles.small}>{note.first.hashLine}</Print>
+          <Print style={styles.small}>{note.foot.right}</Print>
         </View>
       </View>
     )
   return (
     <View style={styles.foot}>
-      <Print>{[note.foot.left, note.foot.right].filter(Boolean).join('. ')}</Print>
-      <Print>{`Sheet ${sheet}`}</Print>
+      <Print style={styles.small}>{[note.foot.left, note.foot.right].filter(Boolean).join('. ')}</Print>
+      <Print style={styles.small}>{`Sheet ${sheet}`}</Print>
     </View>
   )
 }

@@ -1,20 +1,37 @@
-import { Circle, Line, Path, Rect, Svg } from '@react-pdf/renderer'
+import { Circle, Line, Rect, Svg, View } from '@react-pdf/renderer'
 import type { ReactNode } from 'react'
 import type { RoomState } from '#shared/design/plan.ts'
 import { colours } from './theme.ts'
 
 /**
- * The product's mark: an arch in a square with its two spandrels filled. Areas only: in the frame of a sheet the PDF
- * library does not resolve `none`.
+ * The product's mark: an arch in a square with its two spandrels filled. Made of boxes: the PDF library does not
+ * lay out drawings in the frame of a sheet.
  */
 export function ArchMark({ size }: { size: number }): ReactNode {
+  const [radius, wall] = [size / 2, size * 0.145]
+  const inner = size - 2 * wall
   return (
-    <Svg width={size} height={size} viewBox="0 0 24 24">
-      <Path d="M0 0h24v13.5A12 12 0 0 0 0 13.5z" fill={colours.verdigris} />
-      <Path d="M0 24V14.5A12 12 0 0 1 24 14.5V24H20.5V14.5A8.5 8.5 0 0 0 3.5 14.5V24z" fill={colours.ink} />
-    </Svg>
+    <View style={{ width: size, height: size }}>
+      <View style={[corner, { width: size, height: size * 0.56, backgroundColor: colours.verdigris }]} />
+      <View
+        style={[
+          corner,
+          { width: size, height: size, backgroundColor: colours.ink },
+          { borderTopLeftRadius: radius, borderTopRightRadius: radius },
+        ]}
+      />
+      <View
+        style={[
+          corner,
+          { left: wall, top: wall, width: inner, height: size - wall, backgroundColor: colours.sheet },
+          { borderTopLeftRadius: inner / 2, borderTopRightRadius: inner / 2 },
+        ]}
+      />
+    </View>
   )
 }
+
+const corner = { position: 'absolute', left: 0, top: 0 } as const
 
 const fills: Record<RoomState, string> = {
   clear: 'none',

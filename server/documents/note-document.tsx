@@ -1,7 +1,7 @@
 import { Document, View } from '@react-pdf/renderer'
 import type { ReactNode } from 'react'
 import type { Note, SheetGroup } from '#shared/note/types.ts'
-import { SectionView } from './blocks.tsx'
+import { SectionView, toAnchor } from './blocks.tsx'
 import { FirstSheetView } from './first-sheet.tsx'
 import { Sheets } from './frame.tsx'
 import { toPrintable } from './glyphs.ts'
@@ -45,7 +45,7 @@ export function NoteDocument({ note, figures }: NoteDocumentProps): ReactNode {
 
 function Group({ group, figure }: { group: SheetGroup; figure: ReactNode }): ReactNode {
   return (
-    <View break id={group.id} bookmark={{ title: toPrintable(group.title) }}>
+    <View break={group.newSheet} {...toAnchor(group.id, group.title)}>
       {group.sections.map((section) => (
         <SectionView key={section.id} section={section} figure={figure} />
       ))}

@@ -130,21 +130,19 @@ function Hatching({ id, shape, hatch, colour, box }: HatchingProps): ReactNode {
   const area: Box | null =
     shape.type === 'rect' ? shape : shape.type === 'path' ? (boxOfPath(shape.d) ?? box) : null
   if (!area) return null
-  const lines = angles
-    .flatMap((angle) => hatchLines(area, spacing, angle))
-    .map((line: LineShape, index) => (
-      <Line
-        key={index}
-        x1={round(line.x1)}
-        y1={round(line.y1)}
-        x2={round(line.x2)}
-        y2={round(line.y2)}
-        stroke={colour.hatch ?? colours.hair}
-        strokeWidth={width}
-        strokeOpacity={opacity}
-      />
-    ))
-  if (shape.type !== 'path') return <G>{lines}</G>
+  // One path for all lines: an element a line would be slow.
+  const d = angles.flatMap((angle) => hatchLines(area, spacing, angle).map(toSegment)).join('')
+  if (d === '') return null
+  const lines = (
+    <Path
+      d={d}
+      fill="none"
+      stroke={colour.hatch ?? colours.hair}
+      strokeWidth={width}
+      strokeOpacity={opacity}
+    />
+  )
+  if (shape.type !== 'path') return lines
   return (
     <G>
       <Defs>
@@ -156,6 +154,9 @@ function Hatching({ id, shape, hatch, colour, box }: HatchingProps): ReactNode {
     </G>
   )
 }
+
+const toSegment = ({ x1, y1, x2, y2 }: LineShape): string =>
+  `M${round(x1)} ${round(y1)}L${round(x2)} ${round(y2)}`
 
 /** Box of a path of absolute M, L, H, V and Z commands; null for any other, which then hatches the whole drawing. */
 function boxOfPath(d: string): Box | null {

@@ -1,7 +1,7 @@
 import { Text, type View } from '@react-pdf/renderer'
 import type { ComponentProps, ReactNode } from 'react'
 import { toPrintable } from './glyphs.ts'
-import { LEADING } from './theme.ts'
+import { styles } from './theme.ts'
 
 export type PrintStyle = NonNullable<ComponentProps<typeof View>['style']>
 
@@ -13,8 +13,6 @@ interface PrintProps {
 /** The only way in which a note sets text: every string passes the glyph guard. */
 export function Print({ children, style = {} }: PrintProps): ReactNode {
   return (
-    <Text style={[{ lineHeight: LEADING }, ...(Array.isArray(style) ? style : [style])]}>
-      {toPrintable(children)}
-    </Text>
+    <Text style={[styles.text, ...(Array.isArray(style) ? style : [style])]}>{toPrintable(children)}</Text>
   )
 }

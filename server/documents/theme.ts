@@ -36,10 +36,10 @@ export const sideMargin = (paper: Paper): number => (widths[paper] - BLOCK_WIDTH
 export const pageSize = (paper: Paper): 'A4' | 'LETTER' => (paper === 'A4' ? 'A4' : 'LETTER')
 
 /** Sizes in points; nothing is set below 7. */
-/** Leading of all text that names none. It is set on each text: the page's own would be applied twice in its frame. */
-export const LEADING = 1.36
-
 export const styles = StyleSheet.create({
+  /** Set on each text, not on the page: the frame of a sheet would apply the page's leading twice. */
+  text: { fontSize: 8.4, lineHeight: 1.36 },
+
   page: {
     fontFamily: TEXT,
     fontSize: 8.4,
@@ -57,9 +57,15 @@ export const styles = StyleSheet.create({
     paddingBottom: 5,
     marginBottom: 12,
   },
-  product: { fontSize: 9.4, fontWeight: 600, marginLeft: 5, width: 130 },
-  headMark: { flexGrow: 1, textAlign: 'center', fontSize: 8.6, fontWeight: 600, color: colours.minium },
-  headNumber: { width: 150, textAlign: 'right', fontSize: 8, color: colours.ink2 },
+  product: { fontSize: 9.4, fontWeight: 600, marginLeft: 5, width: 142 },
+  headMark: {
+    width: BLOCK_WIDTH - 320,
+    textAlign: 'center',
+    fontSize: 8.6,
+    fontWeight: 600,
+    color: colours.minium,
+  },
+  headNumber: { width: 160, textAlign: 'right', fontSize: 8, color: colours.ink2 },
 
   foot: {
     marginTop: 8,
@@ -68,12 +74,10 @@ export const styles = StyleSheet.create({
     borderTopWidth: 0.5,
     borderTopColor: colours.hair,
     paddingTop: 4,
-    fontSize: 7,
-    color: colours.ink3,
   },
 
   title: { fontSize: 19.5, lineHeight: 1.16, fontWeight: 600 },
-  lead: { fontSize: 8.8, lineHeight: 1.45, color: colours.ink2, marginTop: 4, maxWidth: 460 },
+  lead: { fontSize: 8.8, lineHeight: 1.45, color: colours.ink2, marginTop: 4 },
 
   refusal: {
     marginTop: 10,
@@ -103,9 +107,16 @@ export const styles = StyleSheet.create({
   answerFigure: { fontSize: 12.6, lineHeight: 1.3, fontWeight: 600 },
   answerSmall: { fontSize: 7.2, lineHeight: 1.25, color: colours.ink2 },
 
-  heading: { flexDirection: 'row', flexWrap: 'wrap', alignItems: 'baseline', marginTop: 11, marginBottom: 4 },
+  heading: {
+    flexDirection: 'row',
+    flexWrap: 'wrap',
+    alignItems: 'baseline',
+    marginTop: 11,
+    marginBottom: 4,
+    columnGap: 7,
+  },
   headingTitle: { fontSize: 9.6, fontWeight: 600, lineHeight: 1.25 },
-  headingAside: { fontSize: 7.4, color: colours.ink3, marginLeft: 7, flexShrink: 1, lineHeight: 1.25 },
+  headingAside: { fontSize: 7.4, color: colours.ink3, flexShrink: 1, lineHeight: 1.25 },
 
   row: { flexDirection: 'row', borderTopWidth: 0.5, borderTopColor: colours.hair, paddingVertical: 2 },
   headRow: { flexDirection: 'row', paddingBottom: 2, alignItems: 'flex-end' },
@@ -129,11 +140,6 @@ export const styles = StyleSheet.create({
   titleField: { paddingHorizontal: 6, paddingTop: 3, paddingBottom: 3.5 },
   titleLabel: { fontSize: 7, lineHeight: 1.15, color: colours.ink3 },
   titleValue: { fontSize: 7.9, lineHeight: 1.3, fontWeight: 500 },
-  hashLine: {
-    flexDirection: 'row',
-    justifyContent: 'space-between',
-    fontSize: 7,
-    color: colours.ink3,
-    marginTop: 4,
-  },
+  hashLine: { flexDirection: 'row', justifyContent: 'space-between', marginTop: 4 },
+  small: { fontSize: 7, color: colours.ink3 },
 })

@@ -24,6 +24,7 @@ export function securityHeaders(): RequestHandler {
     crossOriginOpenerPolicy: { policy: 'same-origin' },
     crossOriginResourcePolicy: { policy: 'same-origin' },
     referrerPolicy: { policy: 'same-origin' },
+    xFrameOptions: { action: 'deny' },
     strictTransportSecurity: { maxAge: 31_536_000, includeSubDomains: true },
   })
 }

@@ -30,7 +30,7 @@ export function createBounds({ outputs, cases }: Problem): Bounds {
  */
 export function createEvaluator(walk: VertexWalk, bounds: Bounds): () => void {
   const { problem, columns, firstMean, firstPort } = walk
-  const { cases, variables, cmrr, clip } = problem
+  const { cases, variables, cmrr, clip, clipCase } = problem
   const rowCount = walk.outputs.length
   const clipAt = clip ? variables.indexOf(clip) : -1
   const span = clipSpan(problem)
@@ -128,7 +128,7 @@ export function createEvaluator(walk: VertexWalk, bounds: Bounds): () => void {
         const entry = outputs[row]! * cases + c
         if (middle - spread < bounds.low[entry]!) bounds.low[entry] = middle - spread
         if (middle + spread > bounds.high[entry]!) bounds.high[entry] = middle + spread
-        if (clipAt < 0) continue
+        if (clipAt < 0 || clipCase[c] !== c) continue
         margin.value = middle - rest
         margin.slope = table[start + 1 + clipAt]!
         narrowClipRange(margin, span, bounds, entry)

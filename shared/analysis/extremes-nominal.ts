@@ -46,7 +46,7 @@ export function nominalOutputs(problem: Problem): NominalOutputs {
       })
       const entry = o * cases + c
       found.values[entry] = value
-      if (!clip) continue
+      if (!clip || problem.clipCase[c] !== c) continue
       const slope = gains[problem.variables.indexOf(clip)]!
       const free = Number.isNaN(clip.pinned[c]!)
       const atOrigin = free ? value + slope * (clip.middle - clip.nominal) : value

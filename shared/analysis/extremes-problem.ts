@@ -74,6 +74,8 @@ export interface Problem {
   clip: CompiledVariable | null
   /** Value of the clip variable from which its range is counted, per case. */
   clipOrigin: Float64Array
+  /** Per case the first one that holds all other variables alike: the clip range is the same and found there. */
+  clipCase: Int32Array
 }
 
 export function compileExtremes(network: Network, request: ExtremesRequest): Problem {
@@ -139,7 +141,20 @@ export function compileExtremes(network: Network, request: ExtremesRequest): Pro
       const pinned = clip?.pinned[c] ?? NaN
       return Number.isNaN(pinned) ? (clip?.middle ?? 0) : pinned
     }),
+    clipCase: Int32Array.from(request.cases, (held) =>
+      request.cases.findIndex((other) => heldAlike(held.pinned, other.pinned, clip?.id)),
+    ),
   }
+}
+
+/** True where two cases pin the same variables at the same values, `besides` left aside. */
+function heldAlike(
+  a: Record<string, number>,
+  b: Record<string, number>,
+  besides: string | undefined,
+): boolean {
+  const ids = new Set([...Object.keys(a), ...Object.keys(b)])
+  return [...ids].every((id) => id === besides || a[id] === b[id])
 }
 
 /** Adds `amount` at every port of a variable to a right-hand side. */
@@ -234,17 +249,16 @@ function compileVariable(
 
 function compileResistor(ref: string, relative: number, index: UnknownIndex): BoxedResistor {
   const element = findElement(index, ref)
-  if (element.kind !== 'resistor')
-    throw new RangeError(`${ref} is no resistor: it cannot have a resistor's tolerance`)
+  const term = kindOf(element).conductance(element)
+  if (!term) throw new RangeError(`${ref} is no resistor: it cannot have a resistor's tolerance`)
   if (!(relative < 1)) throw new RangeError(`${ref} has a tolerance of ${relative}; it has to be below 1`)
-  const nominal = 1 / element.value
   return {
     ref,
-    a: findNode(index, element.a),
-    b: findNode(index, element.b),
-    nominal,
-    low: nominal / (1 + relative),
-    high: nominal / (1 - relative),
+    a: findNode(index, term.a),
+    b: findNode(index, term.b),
+    nominal: term.value,
+    low: term.value / (1 + relative),
+    high: term.value / (1 - relative),
   }
 }
 

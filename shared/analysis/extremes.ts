@@ -1,7 +1,9 @@
 import type { Model, PortName } from '#shared/network/elements/element-kind.ts'
 import type { Network } from '#shared/network/types.ts'
+import type { ClipEnds } from './clip-range.ts'
 import { climbVertices } from './extremes-climb.ts'
 import { createBounds, createEvaluator } from './extremes-evaluate.ts'
+import type { Problem } from './extremes-problem.ts'
 import { compileExtremes } from './extremes-problem.ts'
 import { nominalOutputs } from './extremes-nominal.ts'
 import { groupByReach } from './extremes-reach.ts'
@@ -126,18 +128,8 @@ export function computeExtremes(network: Network, request: ExtremesRequest): Ext
         high: bounds.high[at]!,
       }
       if (problem.clip) {
-        entry.clip = toClipRange(
-          problem.clipOrigin[c]!,
-          bounds.clipLow[at]!,
-          bounds.clipHigh[at]!,
-          bounds.clipEmpty[at] === 1,
-        )
-        entry.nominalClip = toClipRange(
-          problem.clipOrigin[c]!,
-          nominal.clipLow[at]!,
-          nominal.clipHigh[at]!,
-          nominal.clipEmpty[at] === 1,
-        )
+        entry.clip = toClipRange(problem, bounds, o, c)
+        entry.nominalClip = toClipRange(problem, nominal, o, c)
       }
       entries[held.id] = entry
     })
@@ -146,10 +138,14 @@ export function computeExtremes(network: Network, request: ExtremesRequest): Ext
   return { outputs, vertices, resistors: reaching.size, proven, keepsSign }
 }
 
-function toClipRange(origin: number, low: number, high: number, empty: boolean): ClipRange {
+function toClipRange(problem: Problem, ends: ClipEnds, output: number, held: number): ClipRange {
+  const found = problem.clipCase[held]!
+  const at = output * problem.cases + found
+  const origin = problem.clipOrigin[found]!
+  const [low, high] = [ends.clipLow[at]!, ends.clipHigh[at]!]
   return {
     low: Number.isFinite(low) ? origin + low : null,
     high: Number.isFinite(high) ? origin + high : null,
-    empty: empty || low > high,
+    empty: ends.clipEmpty[at] === 1 || low > high,
   }
 }

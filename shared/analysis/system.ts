@@ -119,6 +119,9 @@ export function assembleSystem(network: Network, options: AssembleOptions): Syst
     kindOf(present).stamp(present, stamper)
   }
   for (const { ref, port, amount, reference } of options.extra ?? []) {
+    if (!Number.isFinite(amount) || !Number.isFinite(reference ?? 0)) {
+      throw new RangeError(`${ref}: ${port} of ${amount}; it needs a finite amount`)
+    }
     if (port === 'value') continue
     stampPort(findElement(index, ref), port, createStamper(system, options.model, amount), { reference })
   }
@@ -150,9 +153,9 @@ function replacedElements(
 }
 
 function valueOf(element: NetworkElement): number {
-  if ('value' in element) return element.value
-  if ('gain' in element) return element.gain
-  throw new RangeError(`${element.ref} has no single value that could be changed`)
+  const value = kindOf(element).value(element)
+  if (value === null) throw new RangeError(`${element.ref} has no single value that could be changed`)
+  return value
 }
 
 /** A stamper that adds `scale` times what it is given; without `sources` it leaves independent sources out, except in

@@ -1,3 +1,4 @@
+import { solveDc } from '#shared/analysis/dc.ts'
 import {
   computeExtremes,
   type ExtremesCase,
@@ -25,8 +26,8 @@ export interface WatchedPin {
   allowed: Ends
   /** True at an end where the range reaches the rail itself. */
   atRail: Ends<boolean>
-  reached: Record<Place, Ends>
-  nominal: Record<Place, number>
+  /** Voltages reached at each place; only with clips. */
+  reached: Partial<Record<Place, Ends>>
   /** Least distance to the limit at each place, V. */
   margin: Record<Place, Ends>
   nominalMargin: Record<Place, Ends>
@@ -60,8 +61,8 @@ type Weights = Record<string, number>
 const onNode = (node: string, weight = 1): Weights => (node === '0' ? {} : { [node]: weight })
 
 /**
- * `nominal` looks at the nominal resistors alone, to sort out quickly what cannot work; `every-board` gives the bounds;
- * `with-clips` also finds the measurand at which each limit is met.
+ * `nominal` watches the margins of the nominal resistors alone, to sort out quickly what cannot work; `every-board`
+ * those of all boards; `with-clips` adds levels, loads, reached voltages and the measurand at which each limit is met.
  */
 export type AssessDepth = 'nominal' | 'every-board' | 'with-clips'
 
@@ -80,23 +81,9 @@ export function assess(design: Design, spec: ChainSpec, depth: AssessDepth = 'ev
   const high = chains.get('high')
   if (!low || !high) throw new RangeError('a chain is assessed at both ends of its span')
 
-  const outputs = watchOutputs(design, low)
-  const results = new Map<Place, ExtremesResult>()
-  const shared = places.every((p) => differsInSignalOnly(low, chains.get(p) ?? low))
-  if (shared) {
-    const result = run(
-      low,
-      outputs,
-      places.flatMap((p) => casesFor(low, p, signalOf(chains.get(p) ?? low))),
-      depth,
-    )
-    for (const place of places) results.set(place, result)
-  } else {
-    for (const place of places) {
-      const chain = chains.get(place) ?? low
-      results.set(place, run(chain, outputs, casesFor(chain, place, signalOf(chain)), depth))
-    }
-  }
+  const whole = depth === 'with-clips'
+  const outputs = [...watchMargins(design, low), ...(whole ? watchVoltages(low) : [])]
+  const results = boundsAt(chains, outputs, depth)
   const read = (place: Place, id: string, suffix = '') => {
     const result = results.get(place)?.outputs[id]?.[place + suffix]
     if (!result) throw new RangeError(`no bound was computed for ${id} at ${place}`)
@@ -106,10 +93,10 @@ export function assess(design: Design, spec: ChainSpec, depth: AssessDepth = 'ev
   return {
     chains: { low, high },
     places,
-    pins: watchedPins(design, low, places, read, (place, signal) =>
+    pins: watchedPins(design, low, places, whole, read, (place, signal) =>
       toQuantity(design, chains.get(place) ?? low, at[place] ?? 0, signal),
     ),
-    levels: low.levels.map((level) => ({
+    levels: (whole ? low.levels : []).map((level) => ({
       node: level.node,
       title: level.title,
       nominal: {
@@ -122,7 +109,7 @@ export function assess(design: Design, spec: ChainSpec, depth: AssessDepth = 'ev
       },
     })),
     y: firmwareView(low, read),
-    loads: loadsOf(low, places, read),
+    loads: whole ? loadsOf(low, places, read) : [],
     bound: {
       vertices: one?.vertices ?? 0,
       resistors: one?.resistors ?? 0,
@@ -179,7 +166,24 @@ function sameElement(a: NetworkElement, b: NetworkElement | undefined, signal: s
   return 'value' in a && 'value' in b ? a.value === b.value : a.kind === b.kind
 }
 
-function run(
+/** Bounds of every output at every place; one enumeration serves all places where only the signal source differs. */
+function boundsAt(
+  chains: Map<Place, Chain>,
+  outputs: ExtremesOutput[],
+  depth: AssessDepth,
+): Map<Place, ExtremesResult> {
+  const entries = [...chains.entries()]
+  const [first] = entries
+  if (!first) throw new RangeError('a chain is assessed at one place at least')
+  const cases = ([place, chain]: [Place, Chain]) => casesFor(chain, place, signalOf(chain))
+  if (depth === 'nominal') return new Map(entries.map((e) => [e[0], nominalBoard(e[1], outputs, cases(e))]))
+  if (!entries.every(([, chain]) => differsInSignalOnly(first[1], chain)))
+    return new Map(entries.map((e) => [e[0], everyBoard(e[1], outputs, cases(e), depth)]))
+  const result = everyBoard(first[1], outputs, entries.flatMap(cases), depth)
+  return new Map(entries.map(([place]) => [place, result]))
+}
+
+function everyBoard(
   chain: Chain,
   outputs: ExtremesOutput[],
   cases: ExtremesCase[],
@@ -187,13 +191,31 @@ function run(
 ): ExtremesResult {
   return computeExtremes(chain.network, {
     model: 'real',
-    resistors: depth === 'nominal' ? [] : chain.resistors,
+    resistors: chain.resistors,
     variables: chain.variables,
     cmrr: chain.errors.map((e) => ({ ref: e.ref, x: e.cmrr, reference: e.reference })),
     outputs,
     cases,
     ...(depth === 'with-clips' ? { clip: { variable: chain.signal.variable } } : {}),
   })
+}
+
+/** The same shape of answer for the nominal board alone, by one solution of the network. */
+function nominalBoard(chain: Chain, outputs: ExtremesOutput[], cases: ExtremesCase[]): ExtremesResult {
+  const solution = solveDc(chain.network, { model: 'real' })
+  const nominalOf = new Map(chain.variables.map((v) => [v.id, v.nominal]))
+  const sum = (weights: Record<string, number> | undefined, value: (key: string) => number) =>
+    Object.entries(weights ?? {}).reduce((total, [key, weight]) => total + weight * value(key), 0)
+  const found = outputs.map((o) => {
+    const value =
+      (o.constant ?? 0) +
+      sum(o.nodes, (node) => solution.voltage(node)) +
+      sum(o.currents, (ref) => solution.current(ref)) +
+      sum(o.variables, (id) => nominalOf.get(id) ?? 0)
+    const entry = { nominal: value, low: value, high: value }
+    return [o.id, Object.fromEntries(cases.map((c) => [c.id, entry]))] as const
+  })
+  return { outputs: Object.fromEntries(found), vertices: 1, resistors: 0, proven: false, keepsSign: true }
 }
 
 /** The place itself, and the same with the converter's reference held at either limit. */
@@ -213,11 +235,10 @@ function converterVariable(chain: Chain) {
   return id === undefined ? undefined : chain.variables.find((v) => v.id === id)
 }
 
-function watchOutputs(design: Design, chain: Chain): ExtremesOutput[] {
+function watchMargins(design: Design, chain: Chain): ExtremesOutput[] {
   const outputs: ExtremesOutput[] = []
   chain.pins.forEach((pin, i) => {
     const judged = pin.judged ?? pin.node
-    outputs.push({ id: `pin:${i}`, nodes: onNode(pin.node) })
     outputs.push({ id: `low:${i}`, nodes: { ...onNode(judged), vneg: -1 }, constant: -pin.low })
     outputs.push({ id: `high:${i}`, nodes: { ...onNode(judged, -1), vpos: 1 }, constant: -pin.high })
     // Under load the swing shrinks by the current sunk or sourced; each is a margin of its own.
@@ -245,13 +266,18 @@ function watchOutputs(design: Design, chain: Chain): ExtremesOutput[] {
   outputs.push({ id: 'adc:low', nodes: { adc: 1 }, ...scaled(low, 1) })
   outputs.push({ id: 'adc:high', nodes: { adc: -1 }, ...scaled(high, -1) })
   outputs.push({ id: 'adc', nodes: { adc: 1 } })
-  for (const level of chain.levels)
-    outputs.push({
+  return outputs
+}
+
+function watchVoltages(chain: Chain): ExtremesOutput[] {
+  return [
+    ...chain.pins.map((pin, i) => ({ id: `pin:${i}`, nodes: onNode(pin.node) })),
+    ...chain.levels.map((level) => ({
       id: `level:${level.node}`,
       nodes: { ...onNode(level.p), ...(level.n ? onNode(level.n, -1) : {}) },
-    })
-  for (const ref of loadRefs(chain)) outputs.push({ id: `load:${ref}`, nodes: {}, currents: { [ref]: -1 } })
-  return outputs
+    })),
+    ...loadRefs(chain).map((ref) => ({ id: `load:${ref}`, nodes: {}, currents: { [ref]: -1 } })),
+  ]
 }
 
 const loadRefs = (chain: Chain): string[] =>
@@ -261,6 +287,7 @@ function watchedPins(
   design: Design,
   chain: Chain,
   places: Place[],
+  whole: boolean,
   read: Read,
   toMeasurand: (place: Place, signal: number) => number,
 ): WatchedPin[] {
@@ -277,8 +304,7 @@ function watchedPins(
       nearestClip(list, which, read, toMeasurand, design)
     return {
       ...rest,
-      reached: each((p) => boundsOf(read(p, ids.value))),
-      nominal: each((p) => read(p, ids.value).nominal),
+      reached: whole ? each((p) => boundsOf(read(p, ids.value))) : {},
       margin: each((p) => ({ low: worst(ids.low, p), high: worst(ids.high, p) })),
       nominalMargin: each((p) => ({ low: nominal(ids.low, p), high: nominal(ids.high, p) })),
       clipsAt: { low: clip(ids.low, 'nominalClip'), high: clip(ids.high, 'nominalClip') },

@@ -21,9 +21,8 @@ export function clipReason(design: Design, pin: WatchedPin): Reason {
   const margin = wholeMargin(pin)
   const atLow = margin.low <= margin.high
   const by = -Math.min(margin.low, margin.high)
-  const reached = Object.values(pin.reached)
-  const goes = atLow ? Math.min(...reached.map((r) => r.low)) : Math.max(...reached.map((r) => r.high))
   const limit = atLow ? pin.allowed.low : pin.allowed.high
+  const goes = atLow ? limit - by : limit + by
   const numbers = { goes, limit, short: by }
   if (pin.role === 'converter')
     return {
@@ -136,9 +135,9 @@ function loadFinding(load: Load): Finding {
 
 function overVoltageFinding(entry: OverVoltage): Finding {
   const over = entry.state === 'over'
-  const current = formatQuantity(entry.clampCurrent, 'A', { digits: 2, rounding: 'up' })
   const limit = formatQuantity(entry.clampLimit ?? 0, 'A', { digits: 2 })
   const unlimited = entry.clampCurrent === Number.MAX_VALUE
+  const current = unlimited ? '' : formatQuantity(entry.clampCurrent, 'A', { digits: 2, rounding: 'up' })
   return {
     code: over ? 'over-voltage' : 'clamp-current',
     severity: over ? 'over' : 'caution',

@@ -1,6 +1,8 @@
 import type { z } from 'zod'
-import { kindOf } from '#shared/sensors/index.ts'
+import { sensorKinds } from '#shared/sensors/index.ts'
 import { fieldMeta } from '#shared/units/fields.ts'
+import { crossFaults } from './cross-faults.ts'
+import { noteFaults } from './note-faults.ts'
 import type { Fault } from './plan.ts'
 import { designSchema, type Design, type DesignDocument } from './schema.ts'
 
@@ -25,7 +27,7 @@ export function readDesign(given: unknown): ReadResult {
   const parsed = designSchema.safeParse(given)
   if (!parsed.success)
     return { ok: false, faults: parsed.error.issues.flatMap((issue) => toFaults(issue, given)) }
-  const faults = crossFaults(parsed.data)
+  const faults = [...crossFaults(parsed.data), ...noteFaults(parsed.data.notes)]
   if (faults.length > 0) return { ok: false, faults }
   // The schema has just accepted it, so it is a document.
   return { ok: true, document: given as DesignDocument, design: parsed.data }
@@ -84,7 +86,7 @@ function toFaults(issue: Issue, given: unknown): Fault[] {
         {
           path,
           reason: reasonOf(issue, value, meta?.label),
-          accepted: meta?.accepted ?? acceptedOf(issue),
+          accepted: meta ? withLimit(meta.accepted, issue) : acceptedOf(issue),
         },
       ]
   }
@@ -92,7 +94,7 @@ function toFaults(issue: Issue, given: unknown): Fault[] {
 
 function unionFault(issue: Issue & { code: 'invalid_union' }, path: string): Fault {
   if ('discriminator' in issue && typeof issue.discriminator === 'string') {
-    const kinds = ['voltage', 'bridge'].map((k) => `"${k}"`).join(', ')
+    const kinds = sensorKinds.map(({ kind }) => `"${kind}"`).join(', ')
     return { path: path || 'sensor.kind', reason: 'the sensor kind is missing or not known', accepted: kinds }
   }
   return {
@@ -110,6 +112,12 @@ function reasonOf(issue: Issue, value: unknown, label: string | undefined): stri
   if (issue.code === 'invalid_type') return `${name}has the wrong type: ${show(value)}`
   return `${name}is ${show(value)}`
 }
+
+/** A field that names no upper limit still has the one of absurd magnitudes; whoever passes it is told. */
+const withLimit = (accepted: string, issue: Issue): string =>
+  issue.code === 'too_big' && !/up to|below/.test(accepted)
+    ? `${accepted}, at most ${issue.maximum}`
+    : accepted
 
 function acceptedOf(issue: Issue): string {
   if (issue.code === 'too_small')
@@ -175,99 +183,4 @@ function matches(option: SchemaNode | undefined, value: unknown): boolean {
   const kind = option.shape?.kind as { def?: { values?: unknown[] } } | undefined
   if (!kind) return Boolean(option.shape)
   return kind.def?.values?.includes((value as { kind?: unknown }).kind) ?? false
-}
-
-/** Faults that no single field shows. */
-function crossFaults(design: Design): Fault[] {
-  const faults: Fault[] = []
-  const add = (path: string, reason: string, accepted: string) => faults.push({ path, reason, accepted })
-  const { sensor, converter, rails, shiftReference, temperature, parts } = design
-  if (sensor.quantity.low === sensor.quantity.high)
-    add('sensor.quantity.high', 'the measurand has no span: low and high are equal', 'two different values')
-  for (const fault of kindOf(sensor).check(sensor)) faults.push({ ...fault, path: `sensor.${fault.path}` })
-  if (sensor.temperature && sensor.temperature.low > sensor.temperature.high)
-    add('sensor.temperature.high', 'the range is reversed', `${sensor.temperature.low} °C or more`)
-  if (converter.input.low >= converter.input.high)
-    add(
-      'converter.input.high',
-      'the converter range is empty or reversed',
-      `a voltage above ${converter.input.low}, in V`,
-    )
-  if (converter.guard && converter.guard.low + converter.guard.high >= 1)
-    add(
-      'converter.guard',
-      'the guard bands meet: nothing of the range is left',
-      'two fractions with a sum below 1',
-    )
-  if (rails.negative >= rails.positive)
-    add('rails.positive', 'the rails are reversed or equal', `a voltage above ${rails.negative}, in V`)
-  const { reference } = converter
-  if (reference?.same === 'positive' && reference.voltage !== rails.positive)
-    add(
-      'converter.reference.voltage',
-      `the reference is the positive rail, yet ${reference.voltage} V is not ${rails.positive} V`,
-      `${rails.positive}, in V, or leave same out`,
-    )
-  if (reference?.same === 'converter' || reference?.same === 'shift')
-    add(
-      'converter.reference.same',
-      'the converter reference can only be the positive rail',
-      '"positive", or leave it out',
-    )
-  if (shiftReference) {
-    const { same, voltage } = shiftReference
-    if (same === 'converter' && !reference)
-      add('shiftReference.same', 'the converter names no reference to share', 'give converter.reference')
-    if (same === 'shift')
-      add('shiftReference.same', 'a reference cannot be itself', '"converter" or "positive"')
-    const shared =
-      same === 'converter' ? reference?.voltage : same === 'positive' ? rails.positive : undefined
-    if (shared !== undefined && voltage !== undefined && voltage !== shared)
-      add(
-        'shiftReference.voltage',
-        `it is the same source, yet ${voltage} V is not ${shared} V`,
-        `${shared}, in V, or leave it out`,
-      )
-    if (!same && voltage === undefined)
-      add('shiftReference.voltage', 'the reference has no voltage', 'a number above 0, in V')
-  }
-  if (temperature.low > temperature.high)
-    add('temperature.high', 'the temperature range is reversed', `${temperature.low} °C or more`)
-  if (parts.resistors.minimum > parts.resistors.maximum)
-    add('parts.resistors.maximum', 'the window is reversed', `${parts.resistors.minimum} or more, in Ω`)
-  if (parts.capacitors.minimum > parts.capacitors.maximum)
-    add('parts.capacitors.maximum', 'the window is reversed', `${parts.capacitors.minimum} or more, in F`)
-  const { absolute } = converter
-  if (absolute && absolute.low >= absolute.high)
-    add(
-      'converter.absolute.high',
-      'the absolute limits are reversed',
-      `a voltage above ${absolute.low}, in V`,
-    )
-  const ia = parts.instrumentation
-  if (ia.gainMinimum > ia.gainMaximum)
-    add('parts.instrumentation.gainMaximum', 'the gain range is reversed', `${ia.gainMinimum} or more`)
-  const excitation =
-    sensor.kind === 'bridge' && typeof sensor.excitation === 'object' ? sensor.excitation : null
-  if (excitation?.same) {
-    const shared =
-      excitation.same === 'positive'
-        ? rails.positive
-        : excitation.same === 'converter'
-          ? reference?.voltage
-          : (shiftReference?.voltage ?? reference?.voltage)
-    if (shared === undefined)
-      add(
-        'sensor.excitation.same',
-        'there is no such reference to share',
-        'give that reference, or a voltage of its own',
-      )
-    else if (excitation.voltage !== undefined && excitation.voltage !== shared)
-      add(
-        'sensor.excitation.voltage',
-        `it is the same source, yet ${excitation.voltage} V is not ${shared} V`,
-        `${shared}, in V, or leave it out`,
-      )
-  }
-  return faults
 }

@@ -1,6 +1,6 @@
 import type { Candidate, HeadroomEntry, Load, ModelEntry, OverVoltage } from '#shared/design/plan.ts'
 import { formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
-import { figure, margin, NONE, reached, sentence, signed, upward } from './figures.ts'
+import { figure, margin, NONE, reached, sentence, signed, sized, uncapital, upward } from './figures.ts'
 import type { Row, Statement, Table } from './types.ts'
 
 interface Quantity {
@@ -65,7 +65,7 @@ export function toClipText(
 export function toModelTable(entries: readonly ModelEntry[]): Table {
   return {
     columns: [
-      { title: 'Amplifier', share: 11, strong: true },
+      { title: 'Amplifier', share: 18, strong: true },
       { title: 'Between inputs', share: 14, align: 'right' },
       { title: 'Into inputs', share: 13, align: 'right' },
       { title: 'Loop gain', share: 13, align: 'right' },
@@ -81,12 +81,10 @@ export function toModelTable(entries: readonly ModelEntry[]): Table {
         entry.amplifier,
         upward(entry.inputVolts, 'V'),
         upward(entry.inputAmps, 'A'),
-        formatQuantity(entry.loopGain, 'V/V', { digits: 3 }),
-        `${formatQuantity(entry.gainErrorPpm, '', { digits: 3 })} ppm`,
-        `${formatQuantity(entry.gainErrorLsb, '', { digits: 2, rounding: 'outward' })} LSB`,
-        entry.atBandwidthLsb === null
-          ? NONE
-          : `${formatQuantity(entry.atBandwidthLsb, '', { digits: 2, rounding: 'outward' })} LSB`,
+        `${formatQuantity(20 * Math.log10(Math.abs(entry.loopGain)), '', { digits: 4 })} dB`,
+        atLeast(entry.gainErrorPpm, 0.01, 'ppm'),
+        atLeast(entry.gainErrorLsb, 0.001, 'LSB'),
+        entry.atBandwidthLsb === null ? NONE : atLeast(entry.atBandwidthLsb, 0.001, 'LSB'),
         entry.holdsTo === null
           ? 'not at DC'
           : formatQuantity(entry.holdsTo, 'Hz', { digits: 3, rounding: 'down' }),
@@ -96,13 +94,27 @@ export function toModelTable(entries: readonly ModelEntry[]): Table {
   }
 }
 
+/** Below `floor` the figure itself says nothing more. */
+const atLeast = (value: number, floor: number, unit: string): string =>
+  value !== 0 && Math.abs(value) < floor
+    ? `under ${formatQuantity(floor, '')} ${unit}`
+    : `${formatQuantity(value, '', { digits: 2, rounding: 'outward' })} ${unit}`
+
 export function toVerdicts(entries: readonly ModelEntry[]): Statement[] {
   return entries.map((entry) => ({
     state: entry.state,
     text: entry.verdict.text.startsWith(entry.amplifier)
       ? sentence(entry.verdict.text)
-      : `${entry.amplifier}: ${sentence(entry.verdict.text)}`,
+      : `${entry.amplifier}: ${uncapital(sentence(entry.verdict.text))}`,
   }))
+}
+
+const sources: Record<string, string> = {
+  vref: 'Shift reference',
+  vadcref: 'Converter reference',
+  vexc: 'Excitation',
+  vpos: 'Positive rail',
+  vneg: 'Negative rail',
 }
 
 export function toLoadTable(loads: readonly Load[]): Table {
@@ -169,33 +181,28 @@ export function toToleranceTable(
   const sorted = [...tolerance.lines].sort((a, b) => size(b) - size(a) || (a.id < b.id ? -1 : 1))
   const shown = sorted.slice(0, LINES)
   const rest = sorted.slice(LINES)
+  const largest = Math.max(Math.abs(tolerance.worst.low), Math.abs(tolerance.worst.high)) / Math.abs(slope)
   const rows = shown.map((line): Row => ({
     cells: [
       line.label,
       `±${limitText(line.limit, line.unit)}`,
-      signed(line.low / slope, unit),
-      signed(line.high / slope, unit),
+      signed(line.low / slope, largest, unit),
+      signed(line.high / slope, largest, unit),
     ],
   }))
+  const both = (title: string, ends: { low: number; high: number }): string[] => [
+    title,
+    '',
+    `±${sized(ends.low / slope, largest, unit)}`,
+    `±${sized(ends.high / slope, largest, unit)}`,
+  ]
   if (rest.length > 0) {
-    const sum = (end: 'low' | 'high') =>
-      rest.reduce((total, line) => total + Math.abs(line[end]), 0) / Math.abs(slope)
-    rows.push({
-      cells: [
-        `All others, ${rest.length} lines`,
-        '',
-        `±${upward(sum('low'), unit)}`,
-        `±${upward(sum('high'), unit)}`,
-      ],
-    })
+    const sum = (end: 'low' | 'high') => rest.reduce((total, line) => total + Math.abs(line[end]), 0)
+    rows.push({ cells: both(`All others, ${rest.length} lines`, { low: sum('low'), high: sum('high') }) })
   }
-  const total = (title: string, ends: { low: number; high: number }, first: boolean): Row => ({
-    cells: [title, '', `±${upward(ends.low / slope, unit)}`, `±${upward(ends.high / slope, unit)}`],
-    ...(first ? { total: true } : {}),
-  })
   rows.push(
-    total('Worst case, sum of all', tolerance.worst, true),
-    total('Root of the sum of squares', tolerance.rss, false),
+    { cells: both('Worst case, sum of all', tolerance.worst), total: true },
+    { cells: both('Root of the sum of squares', tolerance.rss) },
   )
   return {
     columns: [

@@ -1,7 +1,7 @@
 import type { Candidate, Plan } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
-import { count, figure, NONE, room, share, upward } from './figures.ts'
+import { count, figure, NONE, room, share, uncapital, upward } from './figures.ts'
 import { findLeastRoom, toLinearSpan, toSlope, toWorstEndError, type Span } from './span.ts'
 import type { Answer } from './types.ts'
 
@@ -54,8 +54,8 @@ function leastRoom(design: Design, candidate: Candidate): Answer {
     label: 'Least room, worst case',
     figure: room(least.fraction),
     small: [
-      `${least.side === 'low' ? 'Below' : 'Above'}, ${least.pin}. ${rule}`,
-      `Nominal parts: ${room(nominal)}`,
+      `${least.side === 'low' ? 'Below' : 'Above'}, ${uncapital(least.pin)}`,
+      `Rule: ${share(design.rules.room)}. Nominal parts: ${room(nominal)}`,
     ],
     ...(least.level.state === 'over' || least.level.state === 'tight' ? { state: least.level.state } : {}),
   }

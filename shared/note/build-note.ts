@@ -2,8 +2,7 @@ import type { Candidate, Plan } from '#shared/design/plan.ts'
 import { designSchema, type Design, type DesignDocument } from '#shared/design/schema.ts'
 import { toAnswers } from './answers.ts'
 import { toClipText } from './analysis-tables.ts'
-import { toConditions } from './conditions.ts'
-import { sentence } from './figures.ts'
+import { toCautions, toConditions } from './conditions.ts'
 import { toFindings } from './findings.ts'
 import { toGroups } from './groups.ts'
 import { toAmplifierLines, toPartsTable } from './parts-table.ts'
@@ -57,7 +56,7 @@ function toFirstSheet(
   const { quantity } = design.sensor
   return {
     title: design.name,
-    purpose: toPurpose(design, plan),
+    purpose: toPurpose(design, plan, stands),
     refusal,
     answers: candidate?.realised ? toAnswers(design, plan, candidate) : [],
     findings: toFindings([...(candidate?.findings ?? []), ...plan.findings]),
@@ -79,7 +78,7 @@ function toFirstSheet(
           }
         : null,
     conditions: stands ? { title: 'Holds only if', items: toConditions(design, candidate) } : null,
-    cautions: plan.cautions.map((caution) => sentence(caution.text)),
+    cautions: toCautions(plan),
     titleBlock: toTitleBlock(design, context),
     statement: toStatement(context),
     hashLine: `SHA-256 ${shortHash(plan.designHash)}, first 64 bits of the design's hash; the full value stands on the last sheet.`,

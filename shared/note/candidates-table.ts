@@ -71,6 +71,14 @@ export function toPicksTable(candidate: Candidate): Table | null {
 }
 
 function valueText(candidate: Candidate, pick: PickEntry, ref: string): string {
-  const kind = candidate.components?.find((component) => component.ref === ref)?.kind
-  return `${ref} ${toRkm(pick.values[ref] ?? Number.NaN, kind === 'capacitor' ? 'F' : 'Ω')}`
+  const name = toDrawnRef(candidate, ref)
+  const kind = candidate.components?.find((component) => component.ref === name)?.kind
+  return `${name} ${toRkm(pick.values[ref] ?? Number.NaN, kind === 'capacitor' ? 'F' : 'Ω')}`
+}
+
+/** Parts of a second stage carry a B in the drawing; its own equations and picks leave it out. */
+export function toDrawnRef(candidate: Candidate, ref: string): string {
+  const drawn = `${ref}B`
+  const isDrawn = (candidate.stages?.length ?? 1) > 1 && candidate.components?.some((c) => c.ref === drawn)
+  return isDrawn ? drawn : ref
 }

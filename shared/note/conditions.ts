@@ -1,7 +1,7 @@
-import type { Candidate } from '#shared/design/plan.ts'
+import type { Candidate, Plan } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
-import { figure, share } from './figures.ts'
+import { figure, sentence, share } from './figures.ts'
 
 /** What has to be true for the first sheet to hold, in short lines. */
 export function toConditions(design: Design, candidate: Candidate): string[] {
@@ -82,6 +82,11 @@ export function toAssumptions(design: Design, candidate: Candidate | null): stri
   return lines
 }
 
-/** The limits of what is planned, on every note. */
-export const scopeOfPlan =
+const scopeOfPlan =
   'Spandrel plans the analog path only. Isolation, intrinsic safety, surge protection and functional safety follow the local codes and a licensed or certified practitioner.'
+
+/** What the plan warns of; at least the limits of what is planned. */
+export function toCautions(plan: Plan): string[] {
+  const texts = plan.cautions.map((caution) => sentence(caution.text))
+  return texts.length > 0 ? [...new Set(texts)] : [scopeOfPlan]
+}

@@ -12,12 +12,6 @@ export const figure = (value: number, unit: string): string => formatQuantity(va
 export const upward = (value: number, unit: string): string =>
   formatQuantity(Math.abs(value), unit, { digits: 2, rounding: 'outward' })
 
-/** A change with its sign. */
-export function signed(value: number, unit: string): string {
-  const text = formatQuantity(value, unit, { digits: 2, rounding: 'outward' })
-  return value > 0 ? `+${text}` : text
-}
-
 /** A margin: never printed larger than it is, so a shortfall is rounded up. */
 export const margin = (value: number, unit: string): string =>
   formatQuantity(value, unit, { digits: 3, rounding: 'down' })
@@ -25,12 +19,26 @@ export const margin = (value: number, unit: string): string =>
 export const range = (ends: Ends, unit: string): string =>
   formatRange(ends.low, ends.high, unit, { unitOnce: true })
 
-/** Reached levels: never printed narrower than they are. */
-export const reached = (ends: Ends, unit: string): string =>
-  formatRange(Math.min(ends.low, ends.high), Math.max(ends.low, ends.high), unit, {
-    unitOnce: true,
-    rounding: 'outward',
-  })
+/** Reached levels: never printed narrower than they are; one figure where both ends are the same. */
+export function reached(ends: Ends, unit: string): string {
+  const [low, high] = [Math.min(ends.low, ends.high), Math.max(ends.low, ends.high)]
+  if (low === high) return formatQuantity(low, unit, { digits: 4, rounding: 'outward' })
+  return formatRange(low, high, unit, { unitOnce: true, rounding: 'outward' })
+}
+
+/**
+ * The size of a change with the prefix and the places of the largest one in its column, rounded up, so that figures
+ * under each other can be compared at a glance.
+ */
+export function sized(value: number, largest: number, unit: string): string {
+  const top = Math.max(Math.abs(value), Math.abs(largest))
+  const text = formatRange(-Math.abs(value), top, unit, { digits: 3, rounding: 'outward', zeros: 'keep' })
+  return (text.split(' to ')[0] ?? '').replace('−', '')
+}
+
+/** As `sized`, with its sign. */
+export const signed = (value: number, largest: number, unit: string): string =>
+  `${value > 0 ? '+' : value < 0 ? '−' : ''}${sized(value, largest, unit)}`
 
 export const share = (fraction: number): string =>
   formatQuantity(fraction, '', { digits: 3, display: 'percent' })
@@ -52,3 +60,7 @@ export function sentence(text: string): string {
   const first = trimmed.charAt(0).toUpperCase() + trimmed.slice(1)
   return /[.!?]$/.test(first) ? first : `${first}.`
 }
+
+/** "Converter input" inside a sentence; designators keep their capitals. */
+export const uncapital = (text: string): string =>
+  /^[A-Z][a-z]|^A /.test(text) ? text.charAt(0).toLowerCase() + text.slice(1) : text

@@ -1,4 +1,4 @@
-import type { Candidate, Plan } from '#shared/design/plan.ts'
+import type { Candidate, Equation, Plan } from '#shared/design/plan.ts'
 import type { Design, DesignDocument } from '#shared/design/schema.ts'
 import { formatRange } from '#shared/units/format-quantity.ts'
 import {
@@ -9,8 +9,8 @@ import {
   toToleranceTable,
   toVerdicts,
 } from './analysis-tables.ts'
-import { toCandidatesTable, toPicksTable } from './candidates-table.ts'
-import { scopeOfPlan, toAssumptions } from './conditions.ts'
+import { toCandidatesTable, toDrawnRef, toPicksTable } from './candidates-table.ts'
+import { toAssumptions, toCautions } from './conditions.ts'
 import { toDesignValues } from './design-values.ts'
 import { figure, sentence } from './figures.ts'
 import { toFindings } from './findings.ts'
@@ -33,7 +33,7 @@ export function toGroups(input: Input): SheetGroup[] {
   const groups: SheetGroup[] = []
   const add = (id: string, title: string, sections: (Section | null)[]) => {
     const present = sections.filter((section) => section !== null)
-    if (present.length > 0) groups.push({ id, title, sections: present })
+    if (present.length > 0) groups.push({ id, title, newSheet: id !== 'basis', sections: present })
   }
   if (candidate)
     add('analysis', 'Equations, headroom and model', [
@@ -49,9 +49,7 @@ export function toGroups(input: Input): SheetGroup[] {
   add('basis', 'Transfer, assumptions and candidates', [
     candidate ? transfer(input, candidate, number) : null,
     section('assumptions', 'Assumptions', [{ type: 'list', items: toAssumptions(input.design, candidate) }]),
-    section('cautions', 'Cautions', [
-      { type: 'list', items: [...input.plan.cautions.map((c) => sentence(c.text)), scopeOfPlan] },
-    ]),
+    section('cautions', 'Cautions', [{ type: 'list', items: toCautions(input.plan) }]),
     section('candidates', `Table ${number()}. Candidates considered`, [
       { type: 'table', table: toCandidatesTable(input.plan) },
     ]),
@@ -94,9 +92,16 @@ function equations(candidate: Candidate): Section | null {
   return section(
     'equations',
     'Equations of the arrangement',
-    [{ type: 'equations', items: candidate.equations }],
+    [{ type: 'equations', items: candidate.equations.map((equation) => withDrawnRefs(candidate, equation)) }],
     [candidate.title, ...stages].join('; '),
   )
+}
+
+/** In the equations of the second stage the parts are named as in the drawing. */
+function withDrawnRefs(candidate: Candidate, equation: Equation): Equation {
+  if (!equation.name.endsWith(', S2')) return equation
+  const symbolic = equation.symbolic.replace(/\bR[A-Za-z0-9]+\b/g, (ref) => toDrawnRef(candidate, ref))
+  return { ...equation, symbolic }
 }
 
 function values(input: Input, candidate: Candidate, number: () => number): Section | null {

@@ -1,3 +1,4 @@
+import { toCode } from '#shared/design/codes.ts'
 import type { Candidate, Plan } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
@@ -36,7 +37,7 @@ export function toTransferTable(design: Design, plan: Plan, candidate: Candidate
             { digits: 4 },
           ),
           formatQuantity(volts, 'V', { digits: 5, zeros: 'keep' }),
-          count(toCode(design, volts)),
+          count(toCode(design.converter, volts)),
         ],
       }
     }),
@@ -45,15 +46,6 @@ export function toTransferTable(design: Design, plan: Plan, candidate: Candidate
 
 const clean = (value: number, ends: { low: number; high: number }): number =>
   Math.abs(value) < Math.max(Math.abs(ends.low), Math.abs(ends.high)) * 1e-12 ? 0 : value
-
-/** Straight code of a voltage at the converter, in the coding of the design. */
-export function toCode(design: Design, volts: number): number {
-  const { input, bits, coding } = design.converter
-  const codes = 2 ** bits
-  const straight = Math.floor(((volts - input.low) / (input.high - input.low)) * codes + 0.5)
-  const code = Math.min(codes - 1, Math.max(0, straight))
-  return coding === 'twos' ? code - codes / 2 : code
-}
 
 export function toTransferSentence(design: Design, candidate: Candidate): string {
   const { realised } = candidate

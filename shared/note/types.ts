@@ -113,10 +113,12 @@ export interface Section {
   blocks: Block[]
 }
 
-/** Sections that begin together on a new sheet. */
+/** Sections that belong together. */
 export interface SheetGroup {
   id: string
   title: string
+  /** Whether they begin on a new sheet or follow on. */
+  newSheet: boolean
   sections: Section[]
 }
 

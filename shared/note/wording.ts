@@ -25,17 +25,17 @@ export function toNumberLine(context: NoteContext): string {
 }
 
 /** Where the signal comes from, what it stands for and where it goes. */
-export function toPurpose(design: Design, plan: Plan): string {
+export function toPurpose(design: Design, plan: Plan, stands: boolean): string {
   const { quantity } = design.sensor
   const input = design.converter.input
   const signal = formatRange(plan.required.sensor.low, plan.required.sensor.high, plan.required.per)
   const measurand = formatRange(quantity.low, quantity.high, quantity.unit)
   const target = formatRange(input.low, input.high, 'V')
-  return (
-    `How a ${sourceWords(design)} of ${signal}, for ${quantity.name.toLowerCase()} from ${measurand}, is brought ` +
-    `to a ${design.converter.bits} bit converter that takes ${target}: with the standard values that do it, the ` +
-    `room that is left at every node for every board, and where it clips.`
-  )
+  const what = `${sourceWords(design)} of ${signal}, for ${quantity.name.toLowerCase()} from ${measurand}`
+  const into = `a ${design.converter.bits} bit converter that takes ${target}`
+  return stands
+    ? `How a ${what}, is brought to ${into}, with the room that is left at every node of every board, and where it clips.`
+    : `Asked for: a ${what}, onto ${into}.`
 }
 
 function sourceWords(design: Design): string {

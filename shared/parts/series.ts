@@ -22,6 +22,10 @@ const decades = Object.fromEntries(seriesNames.map((name) => [name, hundredths(n
   readonly number[]
 >
 
+const members = Object.fromEntries(
+  seriesNames.map((name) => [name, new Set(decades[name])]),
+) as unknown as Record<SeriesName, ReadonlySet<number>>
+
 const windows = new Map<string, readonly number[]>()
 const WINDOWS_KEPT = 64
 
@@ -58,7 +62,10 @@ export function standardValues(series: SeriesName, minimum: number, maximum: num
 /** Whether a value (> 0) is a preferred number of the series in any decade. */
 export function isInSeries(value: number, series: SeriesName): boolean {
   if (!(value > 0 && value < Infinity)) return false
-  return Math.abs(nearest(value, series) / value - 1) <= SAME
+  const hundredths = value / 10 ** (Math.floor(Math.log10(value)) - 2)
+  const mantissa = Math.round(hundredths)
+  if (Math.abs(hundredths / mantissa - 1) > SAME) return false
+  return members[series].has(mantissa === 1000 ? 100 : mantissa)
 }
 
 /**

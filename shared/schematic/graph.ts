@@ -65,11 +65,12 @@ export interface Graph {
   hidden: ReadonlySet<string>
 }
 
-const isDevice = (e: NetworkElement): e is Resistor | Capacitor => e.kind === 'resistor' || e.kind === 'capacitor'
+const isDevice = (e: NetworkElement): e is Resistor | Capacitor =>
+  e.kind === 'resistor' || e.kind === 'capacitor'
 const isInternal = (e: NetworkElement): boolean => e.kind === 'resistor' && e.group === 'internal'
 const inConverter = (e: NetworkElement): boolean => isDevice(e) && e.fixed && e.stage === 'converter'
 
-/** Reads the network for drawing. Null where an element has no place in a drawing of this kind. */
+/** Reads the network for drawing. */
 export function readGraph(network: Network): Graph {
   const { elements } = network
   const merge = mergedNodes(elements)
@@ -81,7 +82,10 @@ export function readGraph(network: Network): Graph {
 
   // A reference's own output resistance is part of the reference, not a part on the board.
   const inReference = outside.filter(
-    (e) => e.fixed && e.stage !== 'source' && [e.a, e.b].some((n) => held.has(merge(n)) && e.stage === held.get(merge(n))?.stage),
+    (e) =>
+      e.fixed &&
+      e.stage !== 'source' &&
+      [e.a, e.b].some((n) => held.has(merge(n)) && e.stage === held.get(merge(n))?.stage),
   )
   for (const e of inReference) {
     const driver = held.get(merge(e.a)) ?? held.get(merge(e.b))
@@ -117,7 +121,7 @@ export function readGraph(network: Network): Graph {
   return { devices, cells, fixed, signals, output: merge(network.output.p), hidden }
 }
 
-/** Series sources of the sensor (its zero error) are drawn as a plain connection. */
+/** Series sources of the sensor (its zero error) and links of 0 V are drawn as a plain connection. */
 function mergedNodes(elements: readonly NetworkElement[]): (node: string) => string {
   const parent = new Map<string, string>()
   const find = (node: string): string => {
@@ -125,14 +129,18 @@ function mergedNodes(elements: readonly NetworkElement[]): (node: string) => str
     return up === undefined ? node : find(up)
   }
   for (const e of elements) {
-    if (e.kind !== 'voltage-source' || e.stage !== 'source' || e.p === GROUND || e.n === GROUND) continue
+    if (e.kind !== 'voltage-source' || e.p === GROUND || e.n === GROUND) continue
+    if (e.stage !== 'source' && e.value !== 0) continue
     const [p, n] = [find(e.p), find(e.n)]
     if (p !== n) parent.set(p, n)
   }
   return find
 }
 
-function drivenNodes(elements: readonly NetworkElement[], merge: (node: string) => string): Map<string, Driver> {
+function drivenNodes(
+  elements: readonly NetworkElement[],
+  merge: (node: string) => string,
+): Map<string, Driver> {
   const grounded = (e: NetworkElement): e is VoltageSource =>
     e.kind === 'voltage-source' && (e.n === GROUND) !== (e.p === GROUND)
   return new Map(
@@ -163,7 +171,8 @@ export interface Bridge {
 /** Four fixed resistors of the source in a ring between an excitation and ground. */
 export function findBridge(devices: readonly Device[]): Bridge | null {
   const arms = devices.filter((d) => d.element.kind === 'resistor' && d.element.stage === 'source')
-  const between = (x: string, y: string) => arms.find((d) => (d.a === x && d.b === y) || (d.a === y && d.b === x))
+  const between = (x: string, y: string) =>
+    arms.find((d) => (d.a === x && d.b === y) || (d.a === y && d.b === x))
   const other = (d: Device, node: string) => (d.a === node ? d.b : d.a)
   const lower = arms.filter((d) => d.a === GROUND || d.b === GROUND)
   for (const [i, first] of lower.entries()) {

@@ -78,7 +78,11 @@ export function amplifierSymbol(x: number, y: number, plusAbove: boolean): TwoPi
 }
 
 function signs(x: number, plus: number, minus: number): Shape[] {
-  return [line('sign', x, plus, x + 6, plus), line('sign', x + 3, plus - 3, x + 3, plus + 3), line('sign', x, minus, x + 6, minus)]
+  return [
+    line('sign', x, plus, x + 6, plus),
+    line('sign', x + 3, plus - 3, x + 3, plus + 3),
+    line('sign', x, minus, x + 6, minus),
+  ]
 }
 
 export const INSTRUMENTATION = { width: 96, half: 72, pin: 56, gain: 24, level: 48 }

@@ -29,6 +29,9 @@ interface NumberOptions {
 /** Absurd magnitudes are refused: nothing in this trade exceeds them. */
 const LARGEST = 1e15
 
+/** Units in which far less is absurd already. */
+const LARGEST_IN: Record<string, number> = { F: 1, V: 1e4, A: 1e4, Hz: 1e12 }
+
 const words = (unit: string, o: NumberOptions): string => {
   const low = o.above !== undefined ? `above ${o.above}` : o.min !== undefined ? `from ${o.min}` : ''
   const high = o.below !== undefined ? `below ${o.below}` : o.max !== undefined ? `up to ${o.max}` : ''
@@ -38,14 +41,15 @@ const words = (unit: string, o: NumberOptions): string => {
 
 /** A finite number with its label and SI unit; refuses NaN, infinities and anything beyond ±1e15. */
 export function numberField(label: string, unit: string, options: NumberOptions = {}) {
+  const most = options.max ?? (options.below === undefined ? LARGEST_IN[unit] : undefined)
   let schema = z
     .number()
     .min(options.min ?? -LARGEST)
-    .max(options.max ?? LARGEST)
+    .max(most ?? LARGEST)
   if (options.above !== undefined) schema = schema.gt(options.above)
   if (options.below !== undefined) schema = schema.lt(options.below)
   if (options.integer) schema = schema.int()
-  const accepted = words(unit, options)
+  const accepted = words(unit, most === undefined ? options : { ...options, max: most })
   return schema.register(fieldMeta, {
     label,
     unit,

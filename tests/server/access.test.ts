@@ -5,6 +5,7 @@ import { isAllowed, roles, type Role } from '#shared/api/permissions.ts'
 import { createApp } from '#server/app.ts'
 import { readConfig } from '#server/config.ts'
 import { createEngine } from '#server/lib/create-engine.ts'
+import type { Engine } from '#server/lib/engine.ts'
 import { createLogger } from '#server/lib/logger.ts'
 import {
   buildChannel,
@@ -30,9 +31,23 @@ function registeredRoutes(layers: Layer[]): string[] {
   )
 }
 
+/** What a note holds is no matter here, only who gets one. */
+const engine: Engine = {
+  ...createEngine(false),
+  note: () => Promise.resolve(Buffer.from('%PDF-1.7')),
+}
+
 let server: TestServer
+let world: World
+
 beforeAll(async () => {
-  server = await openTestServer()
+  server = await openTestServer({ engine })
+  const workspaceId = await buildWorkspace(server)
+  const members = {} as Record<Role, Browser>
+  for (const role of roles) members[role] = (await buildMember(server, workspaceId, [role])).browser
+  const elsewhere = await buildWorkspace(server, 'Lower Weir')
+  const stranger = (await buildMember(server, elsewhere, ['owner', 'engineer'])).browser
+  world = { workspaceId, members, elsewhere, stranger }
 })
 afterAll(() => server.close())
 
@@ -42,7 +57,7 @@ describe('the routes of the application', () => {
       config: readConfig({ NODE_ENV: 'test', SPANDREL_DATA: server.folder }),
       db: server.db,
       store: server.store,
-      engine: createEngine(false),
+      engine,
       logger: createLogger('silent', () => undefined),
       clock: () => 0,
       pagesFolder: null,
@@ -87,17 +102,22 @@ function call(browser: Browser, endpoint: Endpoint, place: Place) {
   return body ? request.send(body(place)) : request
 }
 
-/** A workspace with one project and one channel, and a member with these roles. */
-async function buildPlace(held: Role[]): Promise<{ place: Place; member: Browser; engineer: Browser }> {
-  const workspaceId = await buildWorkspace(server)
-  const { browser: engineer } = await buildMember(server, workspaceId, ['engineer'])
-  const project = await buildProject(engineer, workspaceId)
-  const channel = await buildChannel(engineer, channelsOf(project, workspaceId))
-  const { browser: member } = await buildMember(server, workspaceId, held)
-  return { place: { workspaceId, projectId: project.id, channelId: channel.id }, member, engineer }
+/** One workspace with a member of each role, and one with somebody who has nothing to do with the first. */
+interface World {
+  workspaceId: string
+  members: Record<Role, Browser>
+  elsewhere: string
+  stranger: Browser
 }
 
-const answersPdf = (endpoint: Endpoint): boolean => endpoint.produces === 'pdf'
+/** A project with one channel, made for one test. */
+async function buildPlace(browser: Browser, workspaceId: string): Promise<Place> {
+  const project = await buildProject(browser, workspaceId)
+  const channel = await buildChannel(browser, channelsOf(project, workspaceId))
+  return { workspaceId, projectId: project.id, channelId: channel.id }
+}
+
+const buildOwnPlace = (): Promise<Place> => buildPlace(world.members.engineer, world.workspaceId)
 
 describe.each(memberEndpoints.map((endpoint) => [keyOf(endpoint), endpoint] as const))(
   '%s',
@@ -112,8 +132,7 @@ describe.each(memberEndpoints.map((endpoint) => [keyOf(endpoint), endpoint] as c
       'treats a member who is %s as the permissions say',
       async (role) => {
         if (!action) throw new Error('not an endpoint of a workspace')
-        const { place, member } = await buildPlace([role])
-        const { status, body } = await call(member, endpoint, place)
+        const { status, body } = await call(world.members[role], endpoint, await buildOwnPlace())
         if (isAllowed([role], action)) expect(status).toBe(endpoint.status)
         else {
           expect(status).toBe(403)
@@ -123,58 +142,60 @@ describe.each(memberEndpoints.map((endpoint) => [keyOf(endpoint), endpoint] as c
     )
 
     it('tells somebody who is not signed in to sign in', async () => {
-      const { place } = await buildPlace(['reader'])
-      const { status, body } = await call(server.browser(), endpoint, place)
+      const { status, body } = await call(server.browser(), endpoint, await buildOwnPlace())
       expect(status).toBe(401)
       expect(body.error.code).toBe('not_signed_in')
     })
 
     it('tells a member of another workspace that there is nothing, and changes nothing', async () => {
-      const { place, engineer } = await buildPlace(['reader'])
-      const stranger = (await buildPlace(['owner', 'engineer'])).member
-      const { status, body } = await call(stranger, endpoint, place)
+      const place = await buildOwnPlace()
+      const { status, body } = await call(world.stranger, endpoint, place)
       expect(status).toBe(404)
       expect(body.error.code).toBe('not_found')
       expect(JSON.stringify(body)).not.toContain(place.workspaceId)
-      const { body: listed } = await engineer.get(
-        `/api/workspaces/${place.workspaceId}/projects/${place.projectId}/channels`,
-      )
+      const collection = channelsOf({ id: place.projectId }, place.workspaceId)
+      const { body: listed } = await world.members.reader.get(collection).expect(200)
       expect(listed.channels).toMatchObject([{ id: place.channelId, version: 1 }])
     })
 
     it('finds nothing of another workspace under the own one', async () => {
-      const { place } = await buildPlace(['reader'])
-      const own = await buildPlace(['owner', 'engineer'])
+      const foreign = await buildOwnPlace()
       const hasInner = endpoint.path.includes(':projectId') || endpoint.path.includes(':channelId')
-      const { status } = await call(own.member, endpoint, { ...place, workspaceId: own.place.workspaceId })
-      if (hasInner) expect(status).toBe(404)
-      else expect(status).toBe(endpoint.status)
-    })
-
-    it('finds no channel of another project under this one', async () => {
-      const { place, member } = await buildPlace(['owner', 'engineer'])
-      const other = await buildProject(member, place.workspaceId, 'Other board')
-      const isChannelOfProject = endpoint.path.includes(':projectId') && endpoint.path.includes(':channelId')
-      const { status } = await call(member, endpoint, { ...place, projectId: other.id })
-      if (isChannelOfProject) expect(status).toBe(404)
-      else expect(status).not.toBe(500)
+      const { status } = await call(world.stranger, endpoint, { ...foreign, workspaceId: world.elsewhere })
+      expect(status).toBe(hasInner ? 404 : endpoint.status)
     })
 
     it('takes an address that cannot exist for nothing', async () => {
-      const { place, member } = await buildPlace(['owner', 'engineer'])
-      for (const odd of ['..%2f..%2fetc%2fpasswd', '%00', 'a'.repeat(200), "x' OR '1'='1"]) {
-        const request = await call(member, endpoint, { ...place, workspaceId: odd })
-        expect([400, 404]).toContain(request.status)
+      const place = await buildOwnPlace()
+      for (const odd of ['../../etc/passwd', '\u0000', 'a'.repeat(200), "x' OR '1'='1"]) {
+        const { status } = await call(world.members.engineer, endpoint, { ...place, workspaceId: odd })
+        expect([400, 404]).toContain(status)
       }
+    })
+  },
+)
+
+const channelEndpoints = memberEndpoints.filter(
+  ({ path }) => path.includes(':projectId') && path.includes(':channelId'),
+)
+
+describe.each(channelEndpoints.map((endpoint) => [keyOf(endpoint), endpoint] as const))(
+  '%s',
+  (_, endpoint) => {
+    it('finds no channel of another project under this one', async () => {
+      const place = await buildOwnPlace()
+      const other = await buildProject(world.members.engineer, world.workspaceId, 'Other board')
+      const { status } = await call(world.members.engineer, endpoint, { ...place, projectId: other.id })
+      expect(status).toBe(404)
     })
   },
 )
 
 describe('a member with several roles', () => {
   it('may do what any of them allows', async () => {
-    const { place, member } = await buildPlace(['reader', 'engineer'])
-    await member
-      .post(`/api/workspaces/${place.workspaceId}/projects`)
+    const { browser } = await buildMember(server, world.workspaceId, ['reader', 'engineer'])
+    await browser
+      .post(`/api/workspaces/${world.workspaceId}/projects`)
       .send({ name: 'Another board' })
       .expect(201)
   })
@@ -188,11 +209,5 @@ describe('a member with several roles', () => {
     await browser.post(`/api/workspaces/${workspaceId}/projects`).send({ name: 'Two' }).expect(403)
     await server.db.write((m) => m.delete(Membership, { workspaceId, userId: id }))
     await browser.get(`/api/workspaces/${workspaceId}/projects`).expect(404)
-  })
-})
-
-describe('a PDF endpoint', () => {
-  it('exists for a stored channel', () => {
-    expect(memberEndpoints.filter(answersPdf).length).toBe(1)
   })
 })

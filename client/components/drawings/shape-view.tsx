@@ -5,16 +5,19 @@ import './drawings.css'
 
 const PatternPrefix = createContext('')
 
-/** An SVG with the hatch patterns that its shapes need. Hidden from assistive technology: a table says the same. */
+/**
+ * An SVG with the hatch patterns that its shapes need. Without a label it is hidden from assistive technology: a table
+ * says the same.
+ */
 export function Drawing({
   box,
   className,
-  scale = 1,
+  label,
   children,
 }: {
   box: { x: number; y: number; width: number; height: number }
   className?: string
-  scale?: number
+  label?: string
   children: ReactNode
 }) {
   // Patterns are per drawing: a reference into a drawing that is not displayed paints nothing.
@@ -22,10 +25,10 @@ export function Drawing({
   return (
     <svg
       className={`d-drawing${className ? ` ${className}` : ''}`}
-      width={box.width * scale}
-      height={box.height * scale}
+      width={box.width}
+      height={box.height}
       viewBox={`${box.x} ${box.y} ${box.width} ${box.height}`}
-      aria-hidden="true"
+      {...(label === undefined ? { 'aria-hidden': true } : { role: 'group', 'aria-label': label })}
       focusable="false"
     >
       <defs>

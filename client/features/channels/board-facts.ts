@@ -1,5 +1,5 @@
 import type { Channel } from '#shared/api/channels.ts'
-import { formatQuantity, formatRange, formatRoom, type DecimalSign } from '#shared/units/format-quantity.ts'
+import { formatQuantity, formatRange, type DecimalSign } from '#shared/units/format-quantity.ts'
 import { channelNumber, roomRule } from './words.ts'
 import { whenOf } from '#client/lib/when.ts'
 
@@ -40,7 +40,9 @@ export function boardFacts(channels: readonly Channel[], decimalSign: DecimalSig
       'supplies',
     ),
     rule: agreed(
-      channels.map(({ document }) => formatRoom(roomRule(document), decimalSign)),
+      channels.map(({ document }) =>
+        formatQuantity(roomRule(document), '', { display: 'percent', decimalSign }),
+      ),
       'rules',
     ),
     lastChange: last ? `CH ${channelNumber(last)}, ${whenOf(last.updatedAt)}` : 'none yet',

@@ -72,31 +72,33 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
         <p className="plan-count">
           <a href="#plan-findings">{findingsInShort(findings)}</a>
         </p>
-        <div className="plan-work">
-          {readOnly !== null && <p className="plan-read-only">{readOnly}</p>}
-          <StepForm />
-        </div>
-        <div className="plan-diagram">
-          {planning.status === 'failed' && (
-            <Failure
-              title={`The calculation failed: ${planning.message ?? ''}`}
-              safe="Nothing that was typed is lost."
-              onRetry={() => session.retry()}
+        <div className="plan-main">
+          <div className="plan-work">
+            {readOnly !== null && <p className="plan-read-only">{readOnly}</p>}
+            <StepForm />
+          </div>
+          <div className="plan-diagram">
+            {planning.status === 'failed' && (
+              <Failure
+                title={`The calculation failed: ${planning.message ?? ''}`}
+                safe="Nothing that was typed is lost."
+                onRetry={() => session.retry()}
+              />
+            )}
+            {!planning.planned && planning.status === 'computing' && (
+              <Awaited what="the first plan" onRetry={() => session.retry()} />
+            )}
+            <LevelDiagram
+              levels={levels}
+              quantity={quantity}
+              editing={value.editing}
+              stale={stale}
+              {...(planning.planned ? { rule: planning.planned.design.rules.room } : {})}
+              onGo={(node, mark) =>
+                goTo(pathOfNode(node, mark.endsWith('limit') ? 'region' : 'signal', lastStage))
+              }
             />
-          )}
-          {!planning.planned && planning.status === 'computing' && (
-            <Awaited what="the first plan" onRetry={() => session.retry()} />
-          )}
-          <LevelDiagram
-            levels={levels}
-            quantity={quantity}
-            editing={value.editing}
-            stale={stale}
-            {...(planning.planned ? { rule: planning.planned.design.rules.room } : {})}
-            onGo={(node, mark) =>
-              goTo(pathOfNode(node, mark.endsWith('limit') ? 'region' : 'signal', lastStage))
-            }
-          />
+          </div>
         </div>
         <div id="plan-findings" className="plan-side">
           <FindingsColumn />

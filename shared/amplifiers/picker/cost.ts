@@ -16,8 +16,8 @@ export const COST = {
   error: 0.2,
 } as const
 
-/** Costs closer than this are ties. */
-const STEP = 1e6
+/** Costs are told in these steps; closer ones are ties. */
+export const COST_STEP = 1e-6
 
 /** Cost of one value by itself. A link (0) or a resistor left open costs nothing. */
 export function valueCost(value: number, preferred: number): number {
@@ -26,21 +26,9 @@ export function valueCost(value: number, preferred: number): number {
   return COST.decade * far + (isInSeries(value, 'E24') ? 0 : COST.outsideE24)
 }
 
-/** Distinct resistor values; links and open places are no resistors. */
-export function distinctValues(values: readonly number[]): number {
-  let count = 0
-  for (let i = 0; i < values.length; i++) {
-    const value = values[i]
-    if (value !== 0 && value !== Infinity && values.indexOf(value as number) === i) count++
-  }
-  return count
+/** Cost of a pick from the sum of its values' costs, its distinct values and what its error costs. */
+export function totalCost(sum: number, distinct: number, error: number): number {
+  return Math.round((sum + COST.distinct * Math.max(0, distinct - 1) + error) * STEPS) / STEPS
 }
 
-/** Cost of a pick from the sum of its values' costs, its distinct values and its error over the threshold. */
-export function totalCost(sum: number, distinct: number, share: number): number {
-  return roundCost(sum + COST.distinct * Math.max(0, distinct - 1) + COST.error * share)
-}
-
-export function roundCost(cost: number): number {
-  return Math.round(cost * STEP) / STEP
-}
+const STEPS = 1 / COST_STEP

@@ -1,3 +1,4 @@
+import { sortedIndex, type SortedIndex } from './sorted-index.ts'
 import type { ValueList } from './value-list.ts'
 
 /** Demands on the two resistors of a pair, with every bound present. Ω */
@@ -13,6 +14,7 @@ export interface PairBounds {
  */
 export interface PairTable {
   ratios: Float64Array
+  index: SortedIndex
   starts: Uint32Array
   upper: Uint16Array
   lower: Uint16Array
@@ -25,7 +27,9 @@ export interface PairTable {
 /** Ratios closer than this are one: they differ by the rounding of a sum and a division. */
 const SAME = 1e-14
 
-const tables = new Map<string, PairTable>()
+/** By the ids of two lists where nothing else matters, else by everything in words. */
+const tables = new Map<number | string, PairTable>()
+const ID_LIMIT = 2 ** 26
 /** Bound on pairs kept, 12 bytes each and 8 more per distinct ratio. */
 const PAIRS_KEPT = 6_000_000
 let kept = 0
@@ -41,8 +45,18 @@ export function pairTable(
   below: number,
   bounds: PairBounds | null,
 ): PairTable {
-  const limits = bounds ? `${bounds.minimumSum} ${bounds.minimumParallel} ${bounds.maximumParallel}` : ''
-  const key = `${upper.id} ${lower.id} ${above} ${below} ${limits}`
+  const plain = above === 0 && below === 0 && !bounds
+  const key = plain
+    ? upper.id * ID_LIMIT + lower.id
+    : [
+        upper.id,
+        lower.id,
+        above,
+        below,
+        bounds?.minimumSum,
+        bounds?.minimumParallel,
+        bounds?.maximumParallel,
+      ].join()
   const known = tables.get(key)
   if (known) return known
   const table = build(upper, lower, above, below, bounds)
@@ -55,17 +69,31 @@ export function pairTable(
   return table
 }
 
-/** Fills in the least costs of a table, from the costs of the two lists' values. */
+/**
+ * Fills in the least costs of a table, from the costs of the two lists' values, and puts the pairs of each ratio in the
+ * order of their cost.
+ */
 export function priceTable(table: PairTable, upper: Float64Array, lower: Float64Array): void {
   if (table.priced?.[0] === upper && table.priced[1] === lower) return
   table.leastOfAll = Infinity
+  const costOf = (j: number): number =>
+    (upper[table.upper[j] as number] as number) + (lower[table.lower[j] as number] as number)
   for (let i = 0; i < table.ratios.length; i++) {
-    let least = Infinity
-    for (let j = table.starts[i] as number; j < (table.starts[i + 1] as number); j++)
-      least = Math.min(
-        least,
-        (upper[table.upper[j] as number] as number) + (lower[table.lower[j] as number] as number),
-      )
+    const from = table.starts[i] as number
+    const to = table.starts[i + 1] as number
+    for (let j = from + 1; j < to; j++) {
+      const cost = costOf(j)
+      const [a, b] = [table.upper[j] as number, table.lower[j] as number]
+      let place = j
+      while (place > from && costOf(place - 1) > cost) {
+        table.upper[place] = table.upper[place - 1] as number
+        table.lower[place] = table.lower[place - 1] as number
+        place--
+      }
+      table.upper[place] = a
+      table.lower[place] = b
+    }
+    const least = costOf(from)
     table.least[i] = least
     if (least < table.leastOfAll) table.leastOfAll = least
   }
@@ -107,8 +135,10 @@ function build(
     lowers[j] = pair % width
   }
   starts[count] = size
+  const distinct = ratios.slice(0, count)
   return {
-    ratios: ratios.slice(0, count),
+    ratios: distinct,
+    index: sortedIndex(distinct),
     starts: starts.slice(0, count + 1),
     upper: uppers,
     lower: lowers,

@@ -1,9 +1,9 @@
-import { distinctValues, totalCost, valueCost } from './cost.ts'
+import { COST, totalCost } from './cost.ts'
 import { evaluateForm } from './evaluate.ts'
-import { formRefs, type Pair } from './forms.ts'
+import type { Pair } from './forms.ts'
 import { prepare, type Prepared } from './prepare.ts'
 import type { Pick, PickRequest, PickResult } from './request.ts'
-import { search } from './search.ts'
+import { Search } from './search.ts'
 import { type Found, SAME_ENDS, ShortList } from './short-list.ts'
 import { toleranceErrors } from './tolerance-error.ts'
 
@@ -40,135 +40,145 @@ export function pickValues(request: PickRequest): PickResult {
     throw new RangeError('A target runs between two different finite voltages')
   if (!(preferred > 0 && preferred < Infinity)) throw new RangeError('The preferred impedance is above 0 Ω')
   const prepared = prepare(form, request.lists, request.pairs ?? [], preferred)
-  if (!prepared) return { ok: false, reason: 'no-allowed-pair' }
+  return prepared ? new Picker(request, prepared).pick() : { ok: false, reason: 'no-allowed-pair' }
+}
 
-  const nearest = findNearest(request, prepared, target)
-  const first = nearest[0]
-  if (!first) {
-    const closest = findWithin(prepared, target, Infinity, 1)[0]
-    if (!closest) return { ok: false, reason: prepared.allows ? 'no-allowed-pair' : 'outside-window' }
-    if (!prepared.fixed)
-      return { ok: false, reason: 'outside-window', closest: toPick(request, closest, LARGEST_ERROR) }
-    return conclude(request, prepared, [closest])
+class Picker {
+  private readonly count: number
+  private readonly refs: readonly string[]
+
+  constructor(
+    private readonly request: PickRequest,
+    private readonly prepared: Prepared,
+  ) {
+    this.count = request.count ?? DEFAULT_COUNT
+    this.refs = prepared.task.slots.refs
   }
-  return conclude(request, prepared, nearest)
-}
 
-function conclude(request: PickRequest, prepared: Prepared, nearest: Found[]): PickResult {
-  const { target } = request
-  const span = Math.abs(target[1] - target[0])
-  const optimum = Math.min(...nearest.map((found) => found.error)) / span
-  const [toleranceError, threshold] = weigh(request, target, nearest)
-  return {
-    ok: true,
-    optimum,
-    toleranceError,
-    threshold,
-    picks: findPractical(request, prepared, nearest).map((found) => toPick(request, found, threshold)),
-    best: nearest.map((found) => toPick(request, found, threshold)),
+  pick(): PickResult {
+    const { target } = this.request
+    const { allows, fixed } = this.prepared
+    let nearest = this.findNearest(target)
+    if (nearest.length === 0) {
+      nearest = this.findWithin(this.listByError(target, 1), target, Infinity)
+      const closest = nearest[0]
+      if (!closest) return { ok: false, reason: allows ? 'no-allowed-pair' : 'outside-window' }
+      if (!fixed) return { ok: false, reason: 'outside-window', closest: this.toPick(closest, LARGEST_ERROR) }
+    }
+    const { toleranceError, threshold } = this.weigh(target, nearest)
+    return {
+      ok: true,
+      optimum: Math.min(...nearest.map((found) => found.error)) / spanOf(target),
+      toleranceError,
+      threshold,
+      picks: this.findPractical(nearest).map((found) => this.toPick(found, threshold)),
+      best: nearest.map((found) => this.toPick(found, threshold)),
+    }
   }
-}
 
-/** T at the pick with the smallest error, and the threshold that follows, as fractions of the span. */
-function weigh(request: PickRequest, target: Pair, nearest: Found[]): [number, number] {
-  const span = Math.abs(target[1] - target[0])
-  const first = nearest[0] as Found
-  const spread = toleranceErrors(request.form, named(request, first), request.tolerance)
-  const toleranceError = Math.max(...spread) / span
-  return [toleranceError, Math.max(first.error / span, SHARE_OF_TOLERANCE * toleranceError)]
-}
-
-/** The cheapest picks within the threshold; with `inside`, of those that stay inside. */
-function findPractical(request: PickRequest, prepared: Prepared, nearest: Found[]): Found[] {
-  const { inside } = request
-  let target = request.target
-  let optimal = nearest
-  for (let shrinks = 0; ; shrinks++) {
-    const [, threshold] = weigh(request, target, optimal)
-    const found = findCheapest(request, prepared, target, threshold)
-    if (found.length > 0 || !inside || shrinks === SHRINKS) return found
-    const rise = Math.sign(target[1] - target[0])
-    const spread = toleranceErrors(request.form, named(request, optimal[0] as Found), request.tolerance)
-    const shrunk: Pair = [target[0] + rise * spread[0], target[1] - rise * spread[1]]
-    if (spread[0] + spread[1] === 0 || Math.sign(shrunk[1] - shrunk[0]) !== rise) return found
-    optimal = findNearest(request, prepared, shrunk)
-    if (optimal.length === 0) return found
-    target = shrunk
+  /** T at the pick with the smallest error, V at both ends and as a fraction of the span, and the threshold. */
+  private weigh(
+    target: Pair,
+    nearest: readonly Found[],
+  ): { spread: Pair; toleranceError: number; threshold: number } {
+    const { form, tolerance } = this.request
+    const first = nearest[0] as Found
+    const spread = toleranceErrors(form, this.toRecord(first.values), tolerance, this.refs)
+    const toleranceError = Math.max(...spread) / spanOf(target)
+    const threshold = Math.max(first.error / spanOf(target), SHARE_OF_TOLERANCE * toleranceError)
+    return { spread, toleranceError, threshold }
   }
-}
 
-/** The first picks by error, widening the search until it holds enough of them; empty beyond the largest error. */
-function findNearest(request: PickRequest, prepared: Prepared, target: Pair): Found[] {
-  const count = request.count ?? DEFAULT_COUNT
-  for (let error = prepared.grain; ; error *= WIDEN) {
-    const limit = Math.min(error, LARGEST_ERROR)
-    const found = findWithin(prepared, target, limit, count)
-    if (found.length === count || limit === LARGEST_ERROR) return found
+  /** The cheapest picks within the threshold; with `inside`, of those that stay inside. */
+  private findPractical(nearest: readonly Found[]): readonly Found[] {
+    let { target } = this.request
+    let optimal = nearest
+    for (let shrinks = 0; ; shrinks++) {
+      const { spread, threshold } = this.weigh(target, optimal)
+      const found = this.findCheapest(target, threshold)
+      if (found.length > 0 || !this.request.inside || shrinks === SHRINKS) return found
+      const rise = Math.sign(target[1] - target[0])
+      const shrunk: Pair = [target[0] + rise * spread[0], target[1] - rise * spread[1]]
+      if (spread[0] + spread[1] === 0 || Math.sign(shrunk[1] - shrunk[0]) !== rise) return found
+      optimal = this.findNearest(shrunk)
+      if (optimal.length === 0) return found
+      target = shrunk
+    }
   }
-}
 
-function findWithin(prepared: Prepared, target: Pair, limit: number, count: number): Found[] {
-  const { task, allows } = prepared
-  const span = Math.abs(target[1] - target[0])
-  const list = new ShortList(task.slots, task.first, task.second, span, count, null, allows)
-  list.open(limit * span)
-  search({ ...task, target }, list)
-  return list.found
-}
+  /** The first picks by error, widening the search until it holds enough of them; empty beyond the largest error. */
+  private findNearest(target: Pair): readonly Found[] {
+    const list = this.listByError(target, this.count)
+    const { grain, knobs } = this.prepared
+    for (let error = grain * this.count ** (1 / knobs); ; error *= WIDEN) {
+      const limit = Math.min(error, LARGEST_ERROR)
+      const found = this.findWithin(list, target, limit)
+      if (found.length === this.count || limit === LARGEST_ERROR) return found
+    }
+  }
 
-function findCheapest(request: PickRequest, prepared: Prepared, target: Pair, threshold: number): Found[] {
-  const { task, allows } = prepared
-  const { form, inside, tolerance } = request
-  const span = Math.abs(target[1] - target[0])
-  const refs = task.slots.refs
-  const staysInside = (values: Float64Array): boolean => {
-    if (!inside) return true
-    const chosen = toRecord(refs, values)
+  private listByError(target: Pair, count: number): ShortList {
+    const { task, allows } = this.prepared
+    return new ShortList(task.slots, task.first, task.second, spanOf(target), count, null, allows)
+  }
+
+  /** What a list holds after a search up to `limit`, a fraction of the span. */
+  private findWithin(list: ShortList, target: Pair, limit: number): readonly Found[] {
+    list.open(limit * spanOf(target))
+    new Search(this.prepared.task, target, list).run()
+    return list.full || limit >= LARGEST_ERROR ? list.found : []
+  }
+
+  private findCheapest(target: Pair, threshold: number): readonly Found[] {
+    const { task, allows } = this.prepared
+    const { inside } = this.request
+    const demands = inside
+      ? (values: readonly number[]) => (!allows || allows(values)) && this.staysInside(values, inside)
+      : allows
+    const span = spanOf(target)
+    const weight = Math.max(threshold, NO_ERROR) * span
+    const list = new ShortList(task.slots, task.first, task.second, span, this.count, weight, demands)
+    list.open(threshold * span)
+    new Search(task, target, list).run()
+    return list.found
+  }
+
+  private staysInside(values: readonly number[], inside: Pair): boolean {
+    const { form, tolerance } = this.request
+    const chosen = this.toRecord(values)
     const ends = evaluateForm(form, chosen)
-    const spread = toleranceErrors(form, chosen, tolerance)
-    return ([0, 1] as const).every(
-      (end) => ends[end] - spread[end] >= inside[0] && ends[end] + spread[end] <= inside[1],
+    const spread = toleranceErrors(form, chosen, tolerance, this.refs)
+    return (
+      Math.min(ends[0] - spread[0], ends[1] - spread[1]) >= inside[0] &&
+      Math.max(ends[0] + spread[0], ends[1] + spread[1]) <= inside[1]
     )
   }
-  const demands = inside
-    ? (values: Float64Array) => (!allows || allows(values)) && staysInside(values)
-    : allows
-  const weight = Math.max(threshold, NO_ERROR) * span
-  const count = request.count ?? DEFAULT_COUNT
-  const list = new ShortList(task.slots, task.first, task.second, span, count, weight, demands)
-  list.open(threshold * span)
-  search({ ...task, target }, list)
-  return list.found
-}
 
-function toPick(request: PickRequest, found: Found, threshold: number): Pick {
-  const { form, target, preferred } = request
-  const values = named(request, found)
-  const ends = evaluateForm(form, values)
-  const span = Math.abs(target[1] - target[0])
-  const error = Math.max(Math.abs(ends[0] - target[0]), Math.abs(ends[1] - target[1])) / span
-  const chosen = Object.values(values)
-  const distinct = distinctValues(chosen)
-  const sum = chosen.reduce((total, value) => total + valueCost(value, preferred), 0)
-  return {
-    values,
-    error,
-    cost: totalCost(sum, distinct, error / Math.max(threshold, NO_ERROR)),
-    distinct,
-    practical: error <= threshold + SAME_ENDS,
-    ends,
+  private toPick(found: Found, threshold: number): Pick {
+    const { form, target } = this.request
+    const values = this.toRecord(found.values)
+    const ends = evaluateForm(form, values)
+    const error = Math.max(Math.abs(ends[0] - target[0]), Math.abs(ends[1] - target[1])) / spanOf(target)
+    return {
+      values,
+      error,
+      cost: totalCost(found.sum, found.distinct, (COST.error * error) / Math.max(threshold, NO_ERROR)),
+      distinct: found.distinct,
+      practical: error <= threshold + SAME_ENDS,
+      ends,
+    }
+  }
+
+  /** Values by ref, those left open absent. */
+  private toRecord(values: readonly number[]): Record<string, number> {
+    const record: Record<string, number> = {}
+    for (let slot = 0; slot < this.refs.length; slot++) {
+      if (values[slot] !== Infinity) record[this.refs[slot] as string] = values[slot] as number
+    }
+    return record
   }
 }
 
-function named(request: PickRequest, found: Found): Record<string, number> {
-  return toRecord(formRefs(request.form), found.values)
-}
-
-/** Values by ref, those left open absent. */
-function toRecord(refs: readonly string[], values: Float64Array): Record<string, number> {
-  const record: Record<string, number> = {}
-  refs.forEach((ref, slot) => {
-    if (values[slot] !== Infinity) record[ref] = values[slot] as number
-  })
-  return record
+function spanOf(target: Pair): number {
+  return Math.abs(target[1] - target[0])
 }

@@ -8,13 +8,14 @@ import { listCosts, toValueList, type ValueList } from './value-list.ts'
 
 /** A form with its allowed values, ready to be searched for any target. */
 export interface Prepared {
-  task: Omit<Task, 'target'>
+  task: Task
   /** Demands on two resistors that no pair of the search can take care of. */
-  allows: ((values: Float64Array) => boolean) | null
+  allows: ((values: readonly number[]) => boolean) | null
   /** True where a person fixed every value. */
   fixed: boolean
-  /** A search starts with this error, as a fraction of the span: about one pick is that near. */
+  /** Error of the nearest of n picks, as a fraction of the span: of this order times √n with two free ratios, times n with one. */
   grain: number
+  knobs: 1 | 2
 }
 
 /**
@@ -38,7 +39,7 @@ export function prepare(
   const constant = [alpha?.upper, beta.kind === 'pair' ? beta.legs.upper : null].find(
     (leg) => typeof leg === 'number',
   )
-  const all = [...allowed, toValueList([constant ?? Infinity]), toValueList([Infinity])]
+  const all = [...allowed, constant === undefined ? NOTHING : toValueList([constant]), NOTHING]
   const places = new Places(refs, all, preferred)
 
   const firstBounds = alpha && boundsOf(limits, alpha.upper, alpha.lower)
@@ -47,24 +48,27 @@ export function prepare(
   if (!first || !second) return null
   const taken = [firstBounds, second.bounds]
   const rest = limits.filter((limit) => !taken.some((bounds) => bounds?.from.includes(limit)))
-  const sizes = allowed.map((list) => list.values.length).sort((a, b) => b - a)
+  const combinations = allowed.reduce((product, list) => product * list.values.length, 1)
   return {
     task: {
       slots: places.slots,
       lines,
       ideal,
-      first: first.members,
-      firstAbove: alpha?.above ?? 0,
-      firstBelow: alpha?.below ?? 0,
-      firstTable: first.table,
-      firstBounds,
+      first: {
+        ...first.members,
+        above: alpha?.above ?? 0,
+        below: alpha?.below ?? 0,
+        bounds: firstBounds,
+        table: first.table,
+      },
       hasFirst: alpha !== null,
       second: second.members,
       beta: second.task,
     },
     allows: rest.length > 0 ? crossCheck(refs, rest) : null,
-    fixed: (sizes[0] as number) === 1,
-    grain: 4 / ((sizes[0] as number) * (sizes[1] ?? 1)),
+    fixed: combinations === 1,
+    grain: alpha ? GRAIN / Math.sqrt(combinations) : GRAIN / combinations,
+    knobs: alpha ? 2 : 1,
   }
 }
 
@@ -88,13 +92,14 @@ class Places {
     this.slots = {
       refs,
       values: lists.map((list) => list.values),
+      indices: lists.map((list) => list.index),
       // What stands for no part costs nothing.
       costs: lists.map((list, slot) => (slot < refs.length ? listCosts(list, preferred) : FREE)),
     }
   }
 
   nothing(): { members: Members; table: null } {
-    return { members: oneOf(this.none, this.none), table: null }
+    return { members: untabled(this.none, this.none), table: null }
   }
 
   /** Members of a pair: those of its table, or a place for one at a time. Null where the bounds leave no pair. */
@@ -108,7 +113,7 @@ class Places {
     const [upper, lower] = [this.lists[upperSlot] as ValueList, this.lists[lowerSlot] as ValueList]
     if (!tabled) {
       if (bounds && !anyAllowed(upper, lower, bounds)) return null
-      return { members: oneOf(upperSlot, lowerSlot), table: null }
+      return { members: untabled(upperSlot, lowerSlot), table: null }
     }
     const table = pairTable(upper, lower, legs.above, legs.below, bounds)
     if (table.ratios.length === 0) return null
@@ -127,7 +132,7 @@ class Places {
   ): { members: Members; task: BetaTask; bounds: Bounds | null } | null {
     if (beta.kind === 'shared') {
       const { own, series, divider } = beta
-      const members = oneOf(this.none, this.slotOf(beta.ref))
+      const members = untabled(this.none, this.slotOf(beta.ref))
       return { members, task: { kind: 'shared', own, series, divider }, bounds: null }
     }
     if (beta.kind === 'loaded') {
@@ -151,6 +156,9 @@ class Places {
   }
 }
 
+/** Natural range of a ratio that picks spread over, with some room: only the first guess depends on it. */
+const GRAIN = 12
+const NOTHING = toValueList([Infinity])
 const FREE = new Float64Array(1)
 
 /** The ratio is one of the resistors alone, so that one table serves all designs. */
@@ -158,9 +166,10 @@ function isPlain(legs: PairLegs): boolean {
   return legs.above === 0 && legs.below === 0
 }
 
-/** Room for one pair at a time. */
-function oneOf(upperSlot: number, lowerSlot: number): Members {
-  return { upperSlot, lowerSlot, upper: new Uint16Array(1), lower: new Uint16Array(1) }
+const UNTABLED = new Uint16Array(0)
+
+function untabled(upperSlot: number, lowerSlot: number): Members {
+  return { upperSlot, lowerSlot, upper: UNTABLED, lower: UNTABLED }
 }
 
 function allowedValues(form: ValueForm, ref: string, values: readonly number[] | undefined): ValueList {
@@ -202,7 +211,7 @@ function anyAllowed(upper: ValueList, lower: ValueList, bounds: PairBounds): boo
 function crossCheck(
   refs: readonly string[],
   limits: readonly PairLimit[],
-): (values: Float64Array) => boolean {
+): (values: readonly number[]) => boolean {
   const checks = limits.map((limit) => ({
     one: refs.indexOf(limit.refs[0]),
     other: refs.indexOf(limit.refs[1]),

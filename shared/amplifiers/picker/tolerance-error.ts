@@ -12,16 +12,21 @@ export function toleranceErrors(
   form: ValueForm,
   values: Record<string, number>,
   tolerance: Record<string, number>,
+  refs: readonly string[] = formRefs(form),
 ): Pair {
   const free = form.kind === 'gain-single' ? { ...form, gainMinimum: -Infinity, gainMaximum: Infinity } : form
   const total: Pair = [0, 0]
   const here = evaluateForm(free, values)
-  for (const ref of formRefs(form)) {
+  const varied = { ...values }
+  for (const ref of refs) {
     const value = values[ref]
     const limit = tolerance[ref] ?? 0
     if (value === undefined || !(value > 0 && value < Infinity) || limit === 0) continue
-    const twice = evaluateForm(free, { ...values, [ref]: 2 * value })
-    const half = evaluateForm(free, { ...values, [ref]: value / 2 })
+    varied[ref] = 2 * value
+    const twice = evaluateForm(free, varied)
+    varied[ref] = value / 2
+    const half = evaluateForm(free, varied)
+    varied[ref] = value
     for (const end of [0, 1] as const) {
       const a = twice[end] - here[end]
       const b = here[end] - half[end]

@@ -1,10 +1,12 @@
 import { valueCost } from './cost.ts'
+import { sortedIndex, type SortedIndex } from './sorted-index.ts'
 
 /** Allowed values of one resistor, ascending and distinct, with what each costs by itself. */
 export interface ValueList {
   /** The same for every array with the same members. */
   id: number
   values: Float64Array
+  index: SortedIndex
   /** Ω for which `costs` holds. */
   preferred: number
   costs: Float64Array
@@ -23,7 +25,7 @@ let lastId = 0
  */
 export function toValueList(allowed: readonly number[]): ValueList {
   const known = byArray.get(allowed)
-  if (known && holds(known.values, allowed)) return known
+  if (known && (Object.isFrozen(allowed) || holds(known.values, allowed))) return known
   const values = Float64Array.from(new Set(allowed)).sort()
   if (values.some((value) => !(value >= 0)))
     throw new RangeError(
@@ -32,7 +34,13 @@ export function toValueList(allowed: readonly number[]): ValueList {
   const key = values.join()
   let list = byContent.get(key)
   if (!list) {
-    list = { id: ++lastId, values, preferred: NaN, costs: new Float64Array(values.length) }
+    list = {
+      id: ++lastId,
+      values,
+      index: sortedIndex(values),
+      preferred: NaN,
+      costs: new Float64Array(values.length),
+    }
     if (byContent.size >= KEPT) byContent.clear()
     byContent.set(key, list)
   }
@@ -53,16 +61,4 @@ export function listCosts(list: ValueList, preferred: number): Float64Array {
   list.costs = list.values.map((value) => valueCost(value, preferred))
   list.preferred = preferred
   return list.costs
-}
-
-/** Index of the first value not below `wanted`; the length where there is none. */
-export function lowerBound(values: Float64Array, wanted: number): number {
-  let low = 0
-  let high = values.length
-  while (low < high) {
-    const middle = (low + high) >>> 1
-    if ((values[middle] as number) < wanted) low = middle + 1
-    else high = middle
-  }
-  return low
 }

@@ -52,6 +52,8 @@ export const amplifier: ElementKind<Amplifier> = {
       stamper.addSource(branch, commonModeReference(e, context))
     },
   },
+  value: () => null,
+  conductance: () => null,
   withValue: (e) => {
     throw new RangeError(`${e.ref} is an amplifier: it has no single value that could be set`)
   },

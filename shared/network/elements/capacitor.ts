@@ -10,6 +10,8 @@ export const capacitor: ElementKind<Capacitor> = {
   dcPaths: () => [],
   stamp: (e, stamper) => stampAdmittance(stamper, e.a, e.b, 0, e.value),
   ports: { value: (e, stamper) => stampAdmittance(stamper, e.a, e.b, 0, 1) },
+  value: (e) => e.value,
+  conductance: () => null,
   withValue: (e, value) => {
     if (!(value > 0) || !Number.isFinite(value)) throw new RangeError(messageFor(e.ref, value))
     return { ...e, value }

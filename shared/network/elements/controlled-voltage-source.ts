@@ -20,6 +20,8 @@ export const controlledVoltageSource: ElementKind<ControlledVoltageSource> = {
       stamper.add(stamper.branch(e.ref), stamper.node(e.cn), 1)
     },
   },
+  value: (e) => e.gain,
+  conductance: () => null,
   withValue: (e, value) => {
     if (!Number.isFinite(value)) throw new RangeError(`${e.ref} has gain ${value}; it needs a finite gain`)
     return { ...e, gain: value }

@@ -17,6 +17,8 @@ export const currentSource: ElementKind<CurrentSource> = {
       stamper.addSource(stamper.node(e.to), 1)
     },
   },
+  value: (e) => e.value,
+  conductance: () => null,
   withValue: (e, value) => {
     if (!Number.isFinite(value))
       throw new RangeError(`${e.ref} is ${value} A; a source needs a finite current`)

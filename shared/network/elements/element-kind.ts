@@ -52,6 +52,10 @@ export interface ElementKind<E> {
   dcPaths(element: E, model: Model): [string, string][]
   stamp(element: E, stamper: Stamper): void
   ports: Partial<Record<PortName, PortStamp<E>>>
+  /** Ω, F, V, A or gain; null where it has no single value. */
+  value(element: E): number | null
+  /** The two nodes and the conductance, S, by which it enters the equations as one term of rank one; null for others. */
+  conductance(element: E): { a: string; b: string; value: number } | null
   /** The same element with another value; throws a RangeError in circuit terms where it cannot be. */
   withValue(element: E, value: number): E
   /** Message about a figure that is not acceptable; null if all are. */

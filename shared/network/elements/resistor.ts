@@ -10,6 +10,8 @@ export const resistor: ElementKind<Resistor> = {
   dcPaths: (e) => [[e.a, e.b]],
   stamp: (e, stamper) => stampAdmittance(stamper, e.a, e.b, 1 / e.value),
   ports: { value: (e, stamper) => stampAdmittance(stamper, e.a, e.b, -1 / e.value ** 2) },
+  value: (e) => e.value,
+  conductance: (e) => ({ a: e.a, b: e.b, value: 1 / e.value }),
   withValue: (e, value) => {
     if (!(value > 0) || !Number.isFinite(value)) throw new RangeError(messageFor(e.ref, value))
     return { ...e, value }

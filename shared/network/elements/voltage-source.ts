@@ -14,6 +14,8 @@ export const voltageSource: ElementKind<VoltageSource> = {
     stamper.addSource(branch, e.value, e.ac ?? 0)
   },
   ports: { value: (e, stamper) => stamper.addSource(stamper.branch(e.ref), 1) },
+  value: (e) => e.value,
+  conductance: () => null,
   withValue: (e, value) => {
     if (!Number.isFinite(value))
       throw new RangeError(`${e.ref} is ${value} V; a source needs a finite voltage`)

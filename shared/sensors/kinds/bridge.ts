@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import type { Fault } from '#shared/design/plan.ts'
 import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
+import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { accuracyVariables, alongLine, commonKeys, legResistance, volts } from './common.ts'
 import { defineSensor, type SensorContext, type SensorSource } from './define.ts'
 
@@ -31,6 +32,9 @@ const schema = z.strictObject({
     .optional(),
 })
 type Bridge = z.output<typeof schema>
+
+/** Output over excitation at which an arm of the bridge would have no resistance left is 1; stay clear of it, V/V. */
+const LARGEST_RATIO = 0.9
 
 interface Excitation {
   voltage: number
@@ -94,6 +98,19 @@ export const bridge = defineSensor({
         reason: 'the bridge has no span: zero and rated output lie at the same measurand',
         accepted: `a value other than ${sensor.zeroAt}`,
       })
+    else
+      for (const [path, q] of [
+        ['quantity.low', sensor.quantity.low],
+        ['quantity.high', sensor.quantity.high],
+        ['beyond.low', sensor.beyond?.low],
+        ['beyond.high', sensor.beyond?.high],
+      ] as const)
+        if (q !== undefined && Math.abs(ratioAt(sensor, q)) >= LARGEST_RATIO)
+          faults.push({
+            path,
+            reason: `the bridge would give ${formatQuantity(ratioAt(sensor, q), 'V/V', { digits: 3 })} there; an arm has no resistance left`,
+            accepted: `a measurand, rated output and sensitivity that stay below ${LARGEST_RATIO} V/V`,
+          })
     const given = sensor.excitation
     if (typeof given === 'number' && given <= 0)
       faults.push({

@@ -51,6 +51,8 @@ export function alongLine(
   ends: { low: number; high: number },
   q: number,
 ): number {
+  // The far end is met exactly, so that a value typed there is the value printed there.
+  if (q === quantity.high) return ends.high
   return ends.low + ((ends.high - ends.low) * (q - quantity.low)) / (quantity.high - quantity.low)
 }
 

@@ -1,7 +1,8 @@
 import { z } from 'zod'
 import { designSchema } from '#shared/design/schema.ts'
 import { fieldMeta } from '#shared/units/fields.ts'
-import { labelOf } from './labels.ts'
+import { getAt, type DraftDocument } from '../draft/paths.ts'
+import { hasOwnLabel, labelOf } from './labels.ts'
 
 /**
  * What a form needs to know of a key of the design, read from the design's own schema. A new key, or a whole new
@@ -52,17 +53,15 @@ function richest(options: readonly z.core.$ZodType[]): z.core.$ZodType | undefin
   return options.find((option) => option instanceof z.ZodObject) ?? options[0]
 }
 
-const keyOf = (path: string): string => path.slice(path.lastIndexOf('.') + 1)
-
 export function specOf(path: string, wrapped: z.core.$ZodType): FieldSpec {
   const { schema, required, preset } = unwrap(wrapped)
-  const common: Common = { path, label: labelOf(keyOf(path)), required, preset }
+  const common: Common = { path, label: labelOf(path), required, preset }
   if (schema instanceof z.ZodNumber) {
     const meta = fieldMeta.get(schema)
     return {
       ...common,
       control: 'number',
-      label: meta?.label ?? common.label,
+      label: hasOwnLabel(path) ? common.label : (meta?.label ?? common.label),
       unit: meta?.unit ?? '',
       accepted: meta?.accepted ?? 'a number',
       display: meta?.display ?? 'plain',
@@ -150,6 +149,19 @@ function step(wrapped: z.core.$ZodType, key: string): z.core.$ZodType | undefine
     return option && step(option, key)
   }
   return undefined
+}
+
+/**
+ * Whether a draft has to answer this key: the design is refused without it, and every group around it is either
+ * required as well or already begun.
+ */
+export function isAsked(spec: FieldSpec, sensorKind: string, document: DraftDocument): boolean {
+  if (!spec.required) return false
+  const keys = spec.path.split('.')
+  return keys.slice(0, -1).every((_, index) => {
+    const around = keys.slice(0, index + 1).join('.')
+    return getAt(document, around) !== undefined || fieldAt(around, sensorKind).required
+  })
 }
 
 /** Every single field at or under a specification, groups taken apart. */

@@ -34,7 +34,7 @@ const labels: Readonly<Record<string, string>> = {
   rails: 'Rails',
   reference: 'Reference of the converter',
   resistors: 'Resistors',
-  same: 'It is the same as',
+  same: 'Same source as',
   series: 'Series',
   shiftReference: 'Shift reference',
   state: 'Holds',
@@ -45,8 +45,6 @@ const labels: Readonly<Record<string, string>> = {
 }
 
 const choices: Readonly<Record<string, string>> = {
-  'single-ended': 'single-ended, against ground',
-  differential: 'differential, two wires on a common mode',
   straight: 'straight binary',
   offset: 'offset binary',
   twos: 'two’s complement',
@@ -74,6 +72,32 @@ function spellOut(key: string): string {
   return words.charAt(0).toUpperCase() + words.slice(1)
 }
 
-export const labelOf = (key: string): string => labels[key] ?? spellOut(key)
+/** Where the key alone would not say which one it is. */
+const byPath: Readonly<Record<string, string>> = {
+  name: 'Name of the channel',
+  'sensor.quantity.name': 'Measurand',
+  'sensor.quantity.unit': 'Unit of the measurand',
+  'sensor.wiring': 'Wiring of the sensor',
+  'sensor.excitation.same': 'Excitation comes from',
+  'converter.wiring': 'Wiring of the converter',
+  'converter.reference.same': 'Reference of the converter is',
+  'shiftReference.same': 'Shift reference is',
+  'shiftReference.voltage': 'Shift reference voltage',
+  'shiftReference.tolerance': 'Shift reference tolerance',
+  'shiftReference.drift': 'Shift reference drift',
+  'parts.amplifier.name': 'Name of the amplifier',
+  'parts.instrumentation.name': 'Name of the part',
+  'parts.resistors.series': 'Series of the resistors',
+  'parts.capacitors.series': 'Series of the capacitors',
+}
+
+/** Words for the key at a path of the design. */
+export const labelOf = (path: string): string => {
+  const key = path.slice(path.lastIndexOf('.') + 1)
+  return byPath[path] ?? labels[key] ?? spellOut(key)
+}
 
 export const choiceLabel = (option: string): string => choices[option] ?? option
+
+/** True where the words of the path are more exact than those of the schema. */
+export const hasOwnLabel = (path: string): boolean => Object.hasOwn(byPath, path)

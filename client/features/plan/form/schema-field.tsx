@@ -4,12 +4,12 @@ import { SelectField } from '#client/components/select-field.tsx'
 import { TextField } from '#client/components/text-field.tsx'
 import { ValueField } from '#client/components/value-field.tsx'
 import type { SeriesName } from '#shared/parts/series.ts'
-import { formatQuantity } from '#shared/units/format-quantity.ts'
+import { formatEditable } from '#shared/units/format-quantity.ts'
 import { usePlanner } from '../planner-context.tsx'
 import { fieldId } from '../words/steps.ts'
 import { appliesTo } from './companions.ts'
 import { choiceLabel } from './labels.ts'
-import type { FieldSpec } from './introspect.ts'
+import { isAsked, type FieldSpec } from './introspect.ts'
 import { NumbersField } from './numbers-field.tsx'
 import { TableField } from './table-field.tsx'
 import { useField } from './use-field.ts'
@@ -28,6 +28,8 @@ export interface SchemaFieldProps {
   series?: SeriesName
   /** Unit that the schema cannot know: the measurand's. */
   unit?: string
+  /** Of a choice: those that can be meant here. */
+  only?: readonly string[]
   /** Groups inside groups are not ruled off again. */
   nested?: boolean
 }
@@ -41,7 +43,12 @@ export function SchemaField(props: SchemaFieldProps) {
     case 'number':
       return <NumberField {...props} />
     case 'choice':
-      return <ChoiceField {...props} options={spec.options} />
+      return (
+        <ChoiceField
+          {...props}
+          options={spec.options.filter((option) => props.only?.includes(option) ?? true)}
+        />
+      )
     case 'flag':
       return <FlagField {...props} />
     case 'text':
@@ -63,7 +70,7 @@ export function presetText(spec: FieldSpec, unit: string): string | undefined {
     if (spec.control !== 'number') return undefined
     // A bound as large as this stands for "none".
     if (Math.abs(spec.preset) >= 1e12 && unit === 'Ω') return 'none'
-    return formatQuantity(spec.preset, unit, { display: spec.display })
+    return formatEditable(spec.preset, unit, { display: spec.display })
   }
   return undefined
 }
@@ -81,14 +88,15 @@ function NumberField({
   unit: given,
 }: SchemaFieldProps) {
   const field = useField(path)
-  const { quantity } = usePlanner()
+  const { quantity, state, sensorKind } = usePlanner()
   const { spec } = field
   if (spec.control !== 'number') return null
   const name = label ?? spec.label
   // The design does not store the measurand's unit with every figure in it, so fields about it take it from there.
   const unit = given ?? (spec.unit === '' && name.startsWith('Measurand') ? quantity.unit : spec.unit)
   const preset = absent ?? presetText(spec, unit)
-  const isOpen = field.value === undefined && spec.required
+  const isOpen =
+    absent === undefined && field.value === undefined && isAsked(spec, sensorKind, state.document)
   return (
     <ValueField
       id={field.id}
@@ -96,7 +104,7 @@ function NumberField({
       unit={unit}
       display={spec.display}
       value={typeof field.value === 'number' ? field.value : null}
-      required={spec.required}
+      required={isOpen}
       disabled={field.disabled}
       {...(field.typed ? { text: field.typed.text } : {})}
       {...(layout ? { layout } : {})}
@@ -209,14 +217,21 @@ function GroupField({
   fields,
 }: SchemaFieldProps & { fields: readonly FieldSpec[] }) {
   const field = useField(path)
+  const isRange = fields.length === 2 && fields.every((inner) => /\.(low|high)$/.test(inner.path))
   return (
-    <fieldset id={fieldId(path)} className={nested ? 'plan-group nested' : 'plan-group'}>
+    <fieldset id={fieldId(path)} className={`plan-group${nested ? ' nested' : ''}${isRange ? ' range' : ''}`}>
       <legend>{label ?? field.spec.label}</legend>
       {help && <p className="field-note">{help}</p>}
       {field.error && <p className="plan-fault">{field.error}</p>}
       <div className="plan-fields">
         {fields.map((inner) => (
-          <SchemaField key={inner.path} path={inner.path} nested />
+          <SchemaField
+            key={inner.path}
+            path={inner.path}
+            nested
+            // Inside a range the group's name says of what.
+            {...(isRange ? { label: inner.path.endsWith('.low') ? 'low' : 'high' } : {})}
+          />
         ))}
       </div>
     </fieldset>

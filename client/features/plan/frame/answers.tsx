@@ -1,5 +1,7 @@
 import { roomTone } from '#client/components/marks.tsx'
+import { Dash } from '#client/components/title-block.tsx'
 import { toAnswers } from '#shared/note/answers.ts'
+import { isAwaited } from '../session/plan-session.ts'
 import { usePlanner } from '../planner-context.tsx'
 
 /** The answers of the design note, from the same function: page and note never differ. */
@@ -13,7 +15,11 @@ export function PlanAnswers() {
         <div key={answer.label}>
           <dt>{answer.label}</dt>
           <dd className={answer.state ? roomTone(answer.state) : undefined}>{answer.figure}</dd>
-          {answer.small && <dd className="small">{answer.small}</dd>}
+          {answer.small.map((line) => (
+            <dd key={line} className="small">
+              {line}
+            </dd>
+          ))}
         </div>
       ))}
     </dl>

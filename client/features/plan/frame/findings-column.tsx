@@ -10,7 +10,7 @@ const marks: Record<ShownFinding['severity'], RoomState> = {
   over: 'over',
   open: 'unknown',
   tight: 'tight',
-  caution: 'unknown',
+  caution: 'tight',
   info: 'unknown',
 }
 
@@ -31,7 +31,8 @@ export function FindingsColumn() {
         <h2>Findings</h2>
         {findings.length === 0 ? (
           <p className="plan-none">
-            <RoomMark state="clear" /> {planning.planned ? 'Nothing is wrong.' : 'Nothing is known yet.'}
+            <RoomMark state={planning.planned ? 'clear' : 'unknown'} />{' '}
+            {planning.planned ? 'Nothing is wrong.' : 'Nothing is known yet.'}
           </p>
         ) : (
           <FindingList findings={findings} />

@@ -26,6 +26,10 @@ export interface PlanState {
   at: string | null
 }
 
+/** Nothing to show yet, as the first plan is still being made. */
+export const isAwaited = ({ planned, status }: PlanState): boolean =>
+  planned === null && status === 'computing'
+
 type Planner = (document: unknown, options: { signal: AbortSignal }) => Promise<Plan>
 
 /** A draft with its plan, outside React: both survive a change of route. */

@@ -1,3 +1,4 @@
+import { SchemaField } from '../form/schema-field.tsx'
 import { Fields, FoldedFields, StepHead } from './step-parts.tsx'
 
 const c = (...keys: string[]): string[] => keys.map((key) => `converter.${key}`)
@@ -17,14 +18,22 @@ export function ConverterStep() {
         title="Reference of the converter"
         group="converter.reference"
         say="The input range scales with it: an error of the reference moves every code."
-        paths={c('reference.voltage', 'reference.tolerance', 'reference.drift', 'reference.same')}
-      />
+        paths={c('reference.voltage', 'reference.tolerance', 'reference.drift')}
+      >
+        <SchemaField path="converter.reference.same" only={['positive']} absent="a source of its own" />
+      </Fields>
       <Fields
         title="Reference that shifts levels"
         group="shiftReference"
         say="Needed where the signal has to be moved up or down. It may be the converter’s own reference."
-        paths={['shiftReference.same', 'shiftReference.voltage', 'shiftReference.tolerance', 'shiftReference.drift']}
-      />
+        paths={['shiftReference.voltage', 'shiftReference.tolerance', 'shiftReference.drift']}
+      >
+        <SchemaField
+          path="shiftReference.same"
+          only={['converter', 'positive']}
+          absent="a source of its own"
+        />
+      </Fields>
       <Fields
         title="Guard bands"
         group="converter.guard"
@@ -34,7 +43,14 @@ export function ConverterStep() {
       <FoldedFields
         title="What the references can drive"
         paths={[
-          ...c('reference.outputResistance', 'reference.source', 'reference.sink', 'reference.noise', 'reference.buffered', 'reference.ageing'),
+          ...c(
+            'reference.outputResistance',
+            'reference.source',
+            'reference.sink',
+            'reference.noise',
+            'reference.buffered',
+            'reference.ageing',
+          ),
           'shiftReference.outputResistance',
           'shiftReference.source',
           'shiftReference.sink',
@@ -59,7 +75,11 @@ export function ConverterStep() {
           'commonMode',
         )}
       />
-      <FoldedFields title="Absolute limits at the pin" group="converter.absolute" paths={c('absolute.low', 'absolute.high', 'absolute.clampCurrent')} />
+      <FoldedFields
+        title="Absolute limits at the pin"
+        group="converter.absolute"
+        paths={c('absolute.low', 'absolute.high', 'absolute.clampCurrent')}
+      />
       <FoldedFields title="Ripple of the rails" paths={['rails.ripple', 'rails.rippleFrequency']} />
     </>
   )

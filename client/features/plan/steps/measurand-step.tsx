@@ -10,7 +10,11 @@ export function MeasurandStep() {
   return (
     <>
       <StepHead title="Measurand" say="What is read, from where to where, and how well" />
-      <Fields title="What is measured" paths={['name', 'sensor.quantity.name', 'sensor.quantity.unit']} group="sensor.quantity">
+      <Fields
+        title="What is measured"
+        paths={['name', 'sensor.quantity.name', 'sensor.quantity.unit']}
+        group="sensor.quantity"
+      >
         <QuantityEnd end="low" />
         <QuantityEnd end="high" />
       </Fields>

@@ -27,7 +27,12 @@ function KindPicker() {
   const { state, dispatch, sensorKind, readOnly } = usePlanner()
   const choose = (kind: string) => {
     const sensor = changeKind(getAt(state.document, 'sensor'), kind)
-    dispatch({ type: 'set', changes: [{ path: 'sensor', value: sensor }], label: 'Sensor kind', path: 'sensor.kind' })
+    dispatch({
+      type: 'set',
+      changes: [{ path: 'sensor', value: sensor }],
+      label: 'Sensor kind',
+      path: 'sensor.kind',
+    })
   }
   return (
     <fieldset className="plan-group" id="field-sensor-kind">
@@ -86,7 +91,10 @@ function KindFields({ kind, first, title }: KindFieldsProps) {
                   changes: [
                     {
                       path: 'sensor',
-                      value: { ...example, quantity: getAt(state.document, 'sensor.quantity') ?? example.quantity },
+                      value: {
+                        ...example,
+                        quantity: getAt(state.document, 'sensor.quantity') ?? example.quantity,
+                      },
                     },
                   ],
                   label: 'Typical figures',

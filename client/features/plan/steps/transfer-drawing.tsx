@@ -1,0 +1,4 @@
+/** The transfer plot of the chain. */
+export function TransferDrawing() {
+  return null
+}

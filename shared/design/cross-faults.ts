@@ -1,0 +1,218 @@
+import { kindOf } from '#shared/sensors/index.ts'
+import type { Fault } from './plan.ts'
+import { temperatureSpan } from './references.ts'
+import type { Design } from './schema.ts'
+
+type Add = (path: string, reason: string, accepted: string) => void
+
+/** Below this a span of volts is lost in rounding and in any noise, V. */
+const SMALLEST_SPAN = 1e-9
+/** A span this much smaller than the figures around it is lost in their rounding. */
+const SMALLEST_SHARE = 1e-9
+/** Most decades of a window: beyond, the pairs of values no longer fit into memory. */
+const MOST_DECADES = 8
+/** Largest bias current that any input carries, A. */
+const MOST_BIAS = 1
+
+/** Faults that no single field shows: each pair of fields is named by the one to change. */
+export function crossFaults(design: Design): Fault[] {
+  const faults: Fault[] = []
+  const add: Add = (path, reason, accepted) => faults.push({ path, reason, accepted })
+  sensorFaults(design, add)
+  converterFaults(design, add)
+  referenceFaults(design, add)
+  partFaults(design, add)
+  if (design.temperature.low > design.temperature.high)
+    add('temperature.high', 'the temperature range is reversed', `${design.temperature.low} or more, in °C`)
+  const refs = design.choose.stages?.map((stage) => stage.ref) ?? []
+  if (new Set(refs).size < refs.length)
+    add('choose.stages', 'one stage is described twice', 'one entry for each of S1 and S2')
+  return faults
+}
+
+/** Whether two ends are so close that their difference is lost in rounding. */
+const isLost = (low: number, high: number): boolean =>
+  Math.abs(high - low) < SMALLEST_SHARE * Math.max(Math.abs(low), Math.abs(high))
+
+function sensorFaults({ sensor }: Design, add: Add): void {
+  const { low, high } = sensor.quantity
+  if (low === high)
+    add('sensor.quantity.high', 'the measurand has no span: low and high are equal', 'two different values')
+  else if (isLost(low, high) || Math.abs(high - low) < 1e-30)
+    add(
+      'sensor.quantity.high',
+      'the span of the measurand is too small to tell its ends apart',
+      'a span of at least a billionth of the larger end',
+    )
+  for (const fault of kindOf(sensor).check(sensor)) add(`sensor.${fault.path}`, fault.reason, fault.accepted)
+  if (sensor.kind === 'voltage' && sensor.output.low !== sensor.output.high) {
+    const { output } = sensor
+    if (isLost(output.low, output.high) || Math.abs(output.high - output.low) < SMALLEST_SPAN)
+      add(
+        'sensor.output.high',
+        'the span of the sensor output is too small',
+        `a span of ${SMALLEST_SPAN} V or more, and of a billionth of the larger end`,
+      )
+  }
+  if (sensor.temperature && sensor.temperature.low > sensor.temperature.high)
+    add(
+      'sensor.temperature.high',
+      'the temperature range of the sensor is reversed',
+      `${sensor.temperature.low} or more, in °C`,
+    )
+  if (sensor.bandLow !== undefined && sensor.bandwidth !== undefined && sensor.bandLow >= sensor.bandwidth)
+    add(
+      'sensor.bandLow',
+      'the lowest frequency of interest is not below the signal bandwidth',
+      `a frequency below ${sensor.bandwidth}, in Hz`,
+    )
+}
+
+function converterFaults({ converter, rails }: Design, add: Add): void {
+  const { input, guard, commonMode, absolute } = converter
+  if (input.low >= input.high)
+    add(
+      'converter.input.high',
+      'the converter range is empty or reversed',
+      `a voltage above ${input.low}, in V`,
+    )
+  else if (isLost(input.low, input.high) || input.high - input.low < SMALLEST_SPAN)
+    add(
+      'converter.input.high',
+      'the converter range is too small',
+      `a range of ${SMALLEST_SPAN} V or more, and of a billionth of the larger end`,
+    )
+  if (guard && guard.low + guard.high >= 1)
+    add(
+      'converter.guard',
+      'the guard bands meet: nothing of the range is left',
+      'two fractions with a sum below 1',
+    )
+  if (commonMode && commonMode.low > commonMode.high)
+    add(
+      'converter.commonMode.high',
+      'the common mode range of the converter is reversed',
+      `${commonMode.low} or more, in V`,
+    )
+  if (absolute && absolute.low >= absolute.high)
+    add(
+      'converter.absolute.high',
+      'the absolute limits are reversed',
+      `a voltage above ${absolute.low}, in V`,
+    )
+  if (rails.negative >= rails.positive)
+    add('rails.positive', 'the rails are reversed or equal', `a voltage above ${rails.negative}, in V`)
+  else if (rails.positive - rails.negative < SMALLEST_SPAN)
+    add('rails.positive', 'the rails are too close', `a voltage above ${rails.negative}, in V`)
+}
+
+function referenceFaults(design: Design, add: Add): void {
+  const { converter, rails, shiftReference, sensor } = design
+  const { reference } = converter
+  if (reference?.same === 'positive' && reference.voltage !== rails.positive)
+    add(
+      'converter.reference.voltage',
+      `the reference is the positive rail, yet ${reference.voltage} V is not ${rails.positive} V`,
+      `${rails.positive}, in V, or leave same out`,
+    )
+  if (reference?.same === 'converter' || reference?.same === 'shift')
+    add(
+      'converter.reference.same',
+      'the converter reference can only be the positive rail',
+      '"positive", or leave it out',
+    )
+  const shift = shiftVoltage(design)
+  if (shiftReference) {
+    const { same, voltage } = shiftReference
+    if (same === 'converter' && !reference)
+      add('shiftReference.same', 'the converter names no reference to share', 'give converter.reference')
+    if (same === 'shift')
+      add('shiftReference.same', 'a reference cannot be itself', '"converter" or "positive"')
+    if (same && shift !== undefined && voltage !== undefined && voltage !== shift)
+      add(
+        'shiftReference.voltage',
+        `it is the same source, yet ${voltage} V is not ${shift} V`,
+        `${shift}, in V, or leave it out`,
+      )
+    if (!same && voltage === undefined)
+      add('shiftReference.voltage', 'the reference has no voltage', 'a number above 0, in V')
+  }
+  const span = temperatureSpan(design)
+  for (const [path, given] of [
+    ['converter.reference', reference],
+    ['shiftReference', shiftReference],
+  ] as const)
+    if (given && given.tolerance + given.drift * span >= 1)
+      add(
+        `${path}.drift`,
+        'tolerance and drift over temperature come to 100 % or more',
+        'figures that leave the reference above 0 V at every temperature',
+      )
+  if (sensor.kind !== 'bridge' || typeof sensor.excitation !== 'object' || !sensor.excitation.same) return
+  const { same, voltage } = sensor.excitation
+  const shared = same === 'positive' ? rails.positive : same === 'converter' ? reference?.voltage : shift
+  if (shared === undefined)
+    add(
+      'sensor.excitation.same',
+      'there is no such reference to share',
+      'give that reference, or a voltage of its own',
+    )
+  else if (voltage !== undefined && voltage !== shared)
+    add(
+      'sensor.excitation.voltage',
+      `it is the same source, yet ${voltage} V is not ${shared} V`,
+      `${shared}, in V, or leave it out`,
+    )
+}
+
+/** Voltage of the shift reference by what it is the same as; undefined where nothing says it. */
+function shiftVoltage({ converter, rails, shiftReference }: Design): number | undefined {
+  if (!shiftReference || shiftReference.same === 'converter') return converter.reference?.voltage
+  return shiftReference.same === 'positive' ? rails.positive : shiftReference.voltage
+}
+
+function partFaults({ parts, temperature }: Design, add: Add): void {
+  const { resistors, capacitors, amplifier, instrumentation } = parts
+  windowFaults('parts.resistors', 'Ω', resistors, add)
+  windowFaults('parts.capacitors', 'F', capacitors, add)
+  if (instrumentation.gainMinimum > instrumentation.gainMaximum)
+    add(
+      'parts.instrumentation.gainMaximum',
+      'the gain range is reversed',
+      `${instrumentation.gainMinimum} or more`,
+    )
+  for (const [name, part] of [
+    ['amplifier', amplifier],
+    ['instrumentation', instrumentation],
+  ] as const)
+    if (part.minimumSupply > part.maximumSupply)
+      add(
+        `parts.${name}.maximumSupply`,
+        'the supply range is reversed',
+        `${part.minimumSupply} or more, in V`,
+      )
+  const { ib, ios, ibDoubling } = amplifier
+  const grown = ibDoubling > 0 ? 2 ** ((temperature.high - 25) / ibDoubling) : 1
+  if (Math.max(Math.abs(ib), ios) * grown > MOST_BIAS)
+    add(
+      'parts.amplifier.ibDoubling',
+      `the bias current would pass ${MOST_BIAS} A at ${temperature.high} °C`,
+      'more kelvins for each doubling, 0 for a constant current, or a smaller bias current',
+    )
+}
+
+function windowFaults(
+  path: string,
+  unit: string,
+  { minimum, maximum }: { minimum: number; maximum: number },
+  add: Add,
+): void {
+  if (minimum > maximum)
+    return add(`${path}.maximum`, 'the window of values is reversed', `${minimum} or more, in ${unit}`)
+  if (Math.log10(maximum / minimum) > MOST_DECADES)
+    add(
+      `${path}.minimum`,
+      `the window of values spans more than ${MOST_DECADES} decades`,
+      `${maximum / 10 ** MOST_DECADES} or more, in ${unit}`,
+    )
+}

@@ -1,0 +1,127 @@
+import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { expectAccessible, startApp, type TestApp } from './support/app.ts'
+
+const steps = [
+  ['measurand', 'Step 1 of 8: Measurand'],
+  ['sensor', 'Step 2 of 8: Sensor'],
+  ['converter', 'Step 3 of 8: Converter'],
+  ['stages', 'Step 4 of 8: Stages'],
+  ['parts', 'Step 5 of 8: Parts'],
+  ['filter', 'Step 6 of 8: Filter'],
+  ['errors', 'Step 7 of 8: Errors'],
+  ['review', 'Step 8 of 8: Review'],
+] as const
+
+describe('the steps of a plan', () => {
+  let app: TestApp
+
+  beforeAll(async () => {
+    app = await startApp()
+  })
+  afterAll(() => app?.close())
+
+  describe.each([
+    ['light', 1440],
+    ['dark', 375],
+  ] as const)('in %s at %i px', (theme, width) => {
+    it.each([['', 'Plan'], ...steps])('%s has nothing that axe objects to', async (step, title) => {
+      const { page, complaints, close } = await app.open({ theme, width })
+      await page.goto(step === '' ? '/' : `/plan/${step}`)
+      await page.locator('[data-testid=answers]').waitFor()
+      await expect.poll(() => page.title()).toMatch(new RegExp(`^${title}`))
+      // Folded groups hold fields as well.
+      await page.evaluate(() => {
+        for (const fold of document.querySelectorAll<HTMLDetailsElement>('details.plan-fold'))
+          fold.open = true
+      })
+      await expectAccessible(page, `${step || 'front page'}, ${theme}, ${width}`)
+      expect(complaints).toEqual([])
+      await close()
+    })
+  })
+
+  it.each([320, 768, 1024, 1920])('fit a page of %i px without scrolling sideways', async (width) => {
+    const { page, close } = await app.open({ width })
+    for (const path of ['/', ...steps.map(([step]) => `/plan/${step}`)]) {
+      await page.goto(path)
+      await page.locator('[data-testid=answers]').waitFor()
+      const beyond = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
+      expect(beyond, path).toBeLessThanOrEqual(0)
+    }
+    await close()
+  })
+
+  it('lead on and back by links named after their target, and by Ctrl+Enter', async () => {
+    const { page, close } = await app.open()
+    await page.goto('/plan/measurand')
+    for (const [step, title] of steps.slice(1)) {
+      await page.keyboard.press('Control+Enter')
+      await page.waitForURL(`**/plan/${step}`)
+      await expect.poll(() => page.title()).toMatch(new RegExp(`^${title}`))
+      await expect
+        .poll(() => page.locator('[aria-current=step]').first().innerText())
+        .toContain(title.split(': ')[1])
+    }
+    await page.getByRole('link', { name: 'Errors', exact: true }).last().click()
+    await page.waitForURL('**/plan/errors')
+    await page.goBack()
+    await page.waitForURL('**/plan/review')
+    await close()
+  })
+
+  it('lead from each answer of the review to its field', async () => {
+    const { page, close } = await app.open()
+    await page.goto('/plan/review')
+    await page.getByRole('link', { name: 'Change Rail tolerance' }).click()
+    await page.waitForURL('**/plan/converter')
+    await expect.poll(() => page.evaluate(() => document.activeElement?.id)).toBe('field-rails-tolerance')
+    await page.goBack()
+    await page.waitForURL('**/plan/review')
+    await close()
+  })
+
+  it('obey a fixed value and say what it does', async () => {
+    const { page, close } = await app.open()
+    await page.goto('/plan/parts')
+    const fix = page.locator('#field-choose-values-Rf')
+    await fix.fill('33k')
+    await page.getByText('33k', { exact: true }).first().waitFor()
+    await page
+      .getByText(/fixed values are obeyed|off by/i)
+      .first()
+      .waitFor()
+    await page.getByRole('button', { name: 'Free Rf' }).click()
+    await expect.poll(() => fix.inputValue()).toBe('')
+    await close()
+  })
+
+  it('plan an arrangement that a person asks for', async () => {
+    const { page, close } = await app.open()
+    await page.goto('/plan/stages')
+    await page.getByRole('radio', { name: /^Inverting amplifier, offset up/ }).check()
+    await page.locator('.chain').getByText('Inverting amplifier, offset up').waitFor()
+    await page.getByRole('radio', { name: /^Let the plan choose/ }).check()
+    await page.locator('.chain').getByText('Non-inverting amplifier, offset up').waitFor()
+    await close()
+  })
+
+  it('never keep the page from taking keys while a plan is computed', async () => {
+    const { page, close } = await app.open()
+    await page.goto('/')
+    await page.locator('[data-testid=answers]').waitFor()
+    await page.evaluate(() => {
+      const held = globalThis as unknown as { longest: number }
+      held.longest = 0
+      new PerformanceObserver((list) => {
+        for (const entry of list.getEntries()) held.longest = Math.max(held.longest, entry.duration)
+      }).observe({ type: 'longtask', buffered: false })
+    })
+    await page.getByLabel('Sensor output, high').fill('')
+    await page.getByLabel('Sensor output, high').pressSequentially('0.41234', { delay: 60 })
+    await page.locator('[data-testid=answers]').waitFor()
+    // The plan itself takes longer than this: were it computed on the page, the longest task would show it.
+    const longest = await page.evaluate(() => (globalThis as unknown as { longest: number }).longest)
+    expect(longest).toBeLessThan(400)
+    await close()
+  })
+})
