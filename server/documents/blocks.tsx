@@ -15,8 +15,14 @@ interface HeadingProps {
   id?: string
 }
 
-/** A place that links inside the file lead to, and its entry in the outline. The outline takes any printable sign. */
-export const toAnchor = (id: string, title: string) => ({ id, bookmark: { title: toPrintable(title) } })
+/**
+ * A place that links inside the file lead to, and its entry in the outline. The entry shows the whole sheet: the
+ * library knows the place of a nested box only within its parent.
+ */
+export const toAnchor = (id: string, title: string) => ({
+  id,
+  bookmark: { title: toPrintable(title), fit: true },
+})
 
 export function Heading({ title, aside, id }: HeadingProps): ReactNode {
   return (

@@ -1,11 +1,13 @@
 import type { ReactNode } from 'react'
 import { buildNetworkFor } from '#shared/design/plan-design.ts'
 import type { Candidate, Plan } from '#shared/design/plan.ts'
-import type { DesignDocument } from '#shared/design/schema.ts'
+import { designSchema, type DesignDocument } from '#shared/design/schema.ts'
 import { layoutLevelDiagram } from '#shared/drawings/level-diagram.ts'
 import type { Box, Shape } from '#shared/drawings/shapes.ts'
 import { textBox } from '#shared/drawings/text-width.ts'
 import { noteMeasures } from '#shared/drawings/level-scale.ts'
+import { transferOf } from '#shared/drawings/transfer-input.ts'
+import { layoutTransferPlot } from '#shared/drawings/transfer-plot.ts'
 import type { Note } from '#shared/note/types.ts'
 import { layoutSchematic } from '#shared/schematic/layout.ts'
 import type { NoteFigures } from './note-document.tsx'
@@ -19,6 +21,8 @@ const POINTS_PER_PX = 0.75
 const SCHEMATIC_PX = 190
 /** ... but not so small that its lettering, which stays at 7 pt, would touch. */
 const SMALLEST_SCALE = 0.8
+
+const TRANSFER_PX = 330
 
 interface FiguresInput {
   document: DesignDocument
@@ -36,7 +40,7 @@ export function drawFigures({ document, plan, note }: FiguresInput): NoteFigures
     levels: note.first.levels ? drawLevels(note.first.levels.levels, quantity, document.rules?.room) : null,
     schematic:
       note.first.schematic && candidate ? drawSchematic(document, candidate, note.meta.symbols) : null,
-    transfer: null,
+    transfer: candidate ? drawTransfer(document, candidate) : null,
   }
 }
 
@@ -67,6 +71,15 @@ function drawSchematic(document: DesignDocument, candidate: Candidate, symbols: 
   const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)
   const scale = Math.min(1, BLOCK_PX / box.width, Math.max(SMALLEST_SCALE, SCHEMATIC_PX / box.height))
   return <Drawing shapes={drawing.shapes} box={box} width={box.width * scale * POINTS_PER_PX} />
+}
+
+function drawTransfer(document: DesignDocument, candidate: Candidate): ReactNode {
+  const { sensor, converter } = designSchema.parse(document)
+  const input = transferOf(candidate, sensor.quantity, converter)
+  if (!input) return null
+  const drawing = layoutTransferPlot(input, { height: TRANSFER_PX })
+  const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)
+  return <Drawing shapes={drawing.shapes} box={box} width={box.width * POINTS_PER_PX} />
 }
 
 /** Lettering here is a little wider than on screen: the box grows sideways to hold all of it. */

@@ -22,7 +22,7 @@ export function Sheets({ note, children }: SheetsProps): ReactNode {
     <Page
       size={pageSize(note.meta.paper)}
       style={[styles.page, { paddingHorizontal: side }]}
-      bookmark={toPrintable(note.first.title)}
+      bookmark={{ title: toPrintable(note.first.title), fit: true, expanded: true }}
       layout={(sheet) => (
         <>
           <RunningHead note={note} />

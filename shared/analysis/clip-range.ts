@@ -21,11 +21,30 @@ const FURTHEST = 1e6
 /** Narrows the interval kept at `entry` to where f ≥ 0 as well. `span` is the size of the variable's usual range. */
 export function narrowClipRange(margin: ConcaveMargin, span: number, ends: ClipEnds, entry: number): void {
   const furthest = FURTHEST * span
-  const high = endInDirection(margin, 1, ends.clipHigh[entry]!, furthest)
-  const low = -endInDirection(margin, -1, -ends.clipLow[entry]!, furthest)
-  if (high === -Infinity || low === Infinity) ends.clipEmpty[entry] = 1
-  if (high > -Infinity && high < ends.clipHigh[entry]!) ends.clipHigh[entry] = high
-  if (low < Infinity && low > ends.clipLow[entry]!) ends.clipLow[entry] = low
+  // f is at least floor + slope·t − steepness·|t|: most boards are settled by that alone
+  let floor = margin.value
+  let steepness = 0
+  for (let k = 0; k < margin.count; k++) {
+    floor -= margin.weights[k]! * Math.abs(margin.offsets[k]!)
+    steepness += margin.weights[k]! * Math.abs(margin.slopes[k]!)
+  }
+  const knownHigh = ends.clipHigh[entry]!
+  if (!staysAbove(floor, margin.slope - steepness, knownHigh)) {
+    const high = endInDirection(margin, 1, knownHigh, furthest)
+    if (high === -Infinity) ends.clipEmpty[entry] = 1
+    else if (high < knownHigh) ends.clipHigh[entry] = high
+  }
+  const knownLow = ends.clipLow[entry]!
+  if (!staysAbove(floor, -margin.slope - steepness, -knownLow)) {
+    const low = -endInDirection(margin, -1, -knownLow, furthest)
+    if (low === Infinity) ends.clipEmpty[entry] = 1
+    else if (low > knownLow) ends.clipLow[entry] = low
+  }
+}
+
+/** True where floor + slope·t, rising or falling from a floor at or above zero, is no less than zero from 0 to `end`. */
+function staysAbove(floor: number, slope: number, end: number): boolean {
+  return floor >= 0 && end >= 0 && (slope >= 0 || floor + slope * end >= 0)
 }
 
 /**

@@ -62,7 +62,7 @@ const onNode = (node: string, weight = 1): Weights => (node === '0' ? {} : { [no
 
 /**
  * `nominal` watches the margins of the nominal resistors alone, to sort out quickly what cannot work; `every-board`
- * those of all boards; `with-clips` adds levels, loads, reached voltages and the measurand at which each limit is met.
+ * those of all boards; `with-clips` adds levels, reached voltages and the measurand at which each limit is met.
  */
 export type AssessDepth = 'nominal' | 'every-board' | 'with-clips'
 
@@ -109,7 +109,7 @@ export function assess(design: Design, spec: ChainSpec, depth: AssessDepth = 'ev
       },
     })),
     y: firmwareView(low, read),
-    loads: whole ? loadsOf(low, places, read) : [],
+    loads: loadsOf(low, places, read),
     bound: {
       vertices: one?.vertices ?? 0,
       resistors: one?.resistors ?? 0,
@@ -266,6 +266,7 @@ function watchMargins(design: Design, chain: Chain): ExtremesOutput[] {
   outputs.push({ id: 'adc:low', nodes: { adc: 1 }, ...scaled(low, 1) })
   outputs.push({ id: 'adc:high', nodes: { adc: -1 }, ...scaled(high, -1) })
   outputs.push({ id: 'adc', nodes: { adc: 1 } })
+  for (const ref of loadRefs(chain)) outputs.push({ id: `load:${ref}`, nodes: {}, currents: { [ref]: -1 } })
   return outputs
 }
 
@@ -276,7 +277,6 @@ function watchVoltages(chain: Chain): ExtremesOutput[] {
       id: `level:${level.node}`,
       nodes: { ...onNode(level.p), ...(level.n ? onNode(level.n, -1) : {}) },
     })),
-    ...loadRefs(chain).map((ref) => ({ id: `load:${ref}`, nodes: {}, currents: { [ref]: -1 } })),
   ]
 }
 

@@ -38,7 +38,7 @@ export function stateOf(pin: WatchedPin, rules: Design['rules']): RoomState {
 }
 
 export function toHeadroom(pin: WatchedPin, rules: Design['rules']): HeadroomEntry {
-  const places = Object.values(pin.reached)
+  const places = [pin.reached.low, pin.reached.high].filter((r) => r !== undefined)
   const nominal = [pin.nominalMargin.low, pin.nominalMargin.high]
   return {
     pin: pin.name,

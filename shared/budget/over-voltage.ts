@@ -18,9 +18,13 @@ export function checkOverVoltage(design: Design, chain: Chain, filterResistance:
   const driven = chain.network.elements.some((e) => e.kind === 'amplifier')
   const entry = (name: string, volts: number, limits: { low: number; high: number }): OverVoltage => {
     const excess = Math.max(volts - limits.high, limits.low - volts, 0)
-    const clampCurrent =
-      excess > 0 ? (filterResistance > 0 ? excess / filterResistance : Number.MAX_VALUE) : 0
-    const state: RoomState = excess === 0 ? 'clear' : clampCurrent <= absolute.clampCurrent ? 'tight' : 'over'
+    const clampCurrent = excess === 0 ? 0 : filterResistance > 0 ? excess / filterResistance : null
+    const state: RoomState =
+      excess === 0
+        ? 'clear'
+        : clampCurrent !== null && clampCurrent <= absolute.clampCurrent
+          ? 'tight'
+          : 'over'
     return {
       case: name,
       pinVolts: { low: volts, high: volts },

@@ -72,7 +72,7 @@ export function findingsFor(
     if (entry.state === 'clear') continue
     list.push(overVoltageFinding(entry))
   }
-  list.push(...fixedFindings(rest.candidate))
+  list.push(...choiceFindings(design, rest.candidate))
   const weight = { over: 0, tight: 1, caution: 2, info: 3 } as const
   return list.sort((a, b) => weight[a.severity] - weight[b.severity])
 }
@@ -117,27 +117,34 @@ function overFinding(design: Design, pin: WatchedPin): Finding {
   }
 }
 
-function loadFinding(load: Load): Finding {
+/** Why a reference cannot carry what is asked of it, as something to act on. */
+export function loadReason(load: Load): Reason {
   const amps = (a: number) => formatQuantity(a, 'A', { digits: 3, rounding: 'up' })
   const sinks = load.sink > load.allowed.sink
-  const text = sinks
-    ? `${load.node === 'vref' ? 'The shift reference' : 'The reference'} would have to take ${amps(load.sink)}; it takes ${amps(load.allowed.sink)}. Buffer it, or use larger resistors.`
-    : `${load.node === 'vref' ? 'The shift reference' : 'The reference'} would have to give ${amps(load.source)}; it gives ${amps(load.allowed.source)}. Buffer it, or use larger resistors.`
+  const name = load.node === 'vref' ? 'The shift reference' : 'The reference'
   return {
     code: sinks ? 'reference-sink' : 'reference-source',
+    text: sinks
+      ? `${name} would have to take ${amps(load.sink)}; it takes ${amps(load.allowed.sink)}. Buffer it, state what it can sink, or use larger resistors.`
+      : `${name} would have to give ${amps(load.source)}; it gives ${amps(load.allowed.source)}. Buffer it, or use larger resistors.`,
+    numbers: { source: load.source, sink: load.sink },
+  }
+}
+
+function loadFinding(load: Load): Finding {
+  return {
+    ...loadReason(load),
     severity: 'over',
     place: load.node,
     path: load.node === 'vref' ? 'shiftReference' : 'converter.reference',
-    text,
-    numbers: { source: load.source, sink: load.sink },
   }
 }
 
 function overVoltageFinding(entry: OverVoltage): Finding {
   const over = entry.state === 'over'
   const limit = formatQuantity(entry.clampLimit ?? 0, 'A', { digits: 2 })
-  const unlimited = entry.clampCurrent === Number.MAX_VALUE
-  const current = unlimited ? '' : formatQuantity(entry.clampCurrent, 'A', { digits: 2, rounding: 'up' })
+  const unlimited = entry.clampCurrent === null
+  const current = formatQuantity(entry.clampCurrent ?? 0, 'A', { digits: 2, rounding: 'up' })
   return {
     code: over ? 'over-voltage' : 'clamp-current',
     severity: over ? 'over' : 'caution',
@@ -150,24 +157,47 @@ function overVoltageFinding(entry: OverVoltage): Finding {
           ? `its clamp would carry ${current}, more than the ${limit} allowed. Raise the series resistor.`
           : `its clamp carries ${current} of the ${limit} allowed.`
     }`,
-    numbers: { volts: entry.pinVolts.high, current: entry.clampCurrent },
+    numbers: {
+      volts: entry.pinVolts.high,
+      ...(entry.clampCurrent === null ? {} : { current: entry.clampCurrent }),
+    },
   }
 }
 
-/** What a person fixed is obeyed; how much worse than the plan's own choice it is stands here. */
-function fixedFindings(candidate: Candidate): Finding[] {
+/** What a person fixed is obeyed; how much worse than the free choice it is, and what had no effect, stands here. */
+function choiceFindings(design: Design, candidate: Candidate): Finding[] {
+  const list: Finding[] = []
+  const info = (code: string, path: string, text: string, numbers: Record<string, number> = {}) =>
+    list.push({ code, severity: 'info', place: 'S1', path, text, numbers })
   const pick = candidate.picks?.[candidate.pick ?? 0]
-  const fixed = candidate.components?.some((c) => c.chosen) ?? false
-  if (!pick || !fixed || pick.practical) return []
-  const error = percent(pick.error, 'up')
-  return [
-    {
-      code: 'fixed-values',
-      severity: 'info',
-      place: 'S1',
-      path: 'choose.values',
-      text: `The fixed values are obeyed; an end point is off by ${error} of the span with ideal amplifiers.`,
-      numbers: { error: pick.error },
-    },
-  ]
+  const { choose } = design
+  const fixed =
+    candidate.components?.some((c) => c.chosen && c.kind === 'resistor' && c.stage !== 'filter') ?? false
+  const best = candidate.optimum?.error
+  if (pick && fixed && !pick.practical)
+    info(
+      'fixed-values',
+      'choose.values',
+      `The fixed values are obeyed: with them an end point is off by ${percent(pick.error, 'up')} of the span${
+        best === undefined ? '' : `; a free choice from the series would be off by ${percent(best, 'up')}`
+      }.`,
+      { error: pick.error, ...(best === undefined ? {} : { best }) },
+    )
+  const known = new Set(candidate.components?.map((c) => c.ref) ?? [])
+  for (const ref of Object.keys(choose.values ?? {}))
+    if (!known.has(ref))
+      info(
+        'unused-value',
+        `choose.values.${ref}`,
+        `${ref} is fixed, but this arrangement has no such part: it has no effect.`,
+      )
+  const count = candidate.picks?.length ?? 0
+  if (choose.pick !== undefined && count > 0 && choose.pick >= count)
+    info(
+      'pick-beyond',
+      'choose.pick',
+      `Pick ${choose.pick} does not exist: there are ${count}, counted from 0. The last one is shown.`,
+      { count },
+    )
+  return list
 }

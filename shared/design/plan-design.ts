@@ -6,7 +6,7 @@ import { toLoads } from '#shared/budget/loads.ts'
 import { checkModel } from '#shared/budget/model-check.ts'
 import { checkOverVoltage } from '#shared/budget/over-voltage.ts'
 import { firstOrderTolerance } from '#shared/budget/tolerance.ts'
-import { attenuationDb, settlingTime } from '#shared/filters/rc.ts'
+import { attenuationDb, loadedBy, settlingTime } from '#shared/filters/rc.ts'
 import type { Network } from '#shared/network/types.ts'
 import { hashOf } from './canonical.ts'
 import { cautionsFor } from './cautions.ts'
@@ -22,7 +22,7 @@ import {
   type Trial,
   type TrialResult,
 } from './plan-stage.ts'
-import { splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
+import { askedArrangement, splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
 import type { Candidate, Ends, Plan, Realised } from './plan.ts'
 import { rankTrial } from './ranking.ts'
 import { DesignRefused, readDesign } from './read.ts'
@@ -45,14 +45,14 @@ export function planDesign(document: unknown): Plan {
 }
 
 function planRead(design: Design, designHash: string): Plan {
-  const { converter, choose } = design
+  const { converter } = design
   const requirement = requirementOf(design)
   const lsb = (converter.input.high - converter.input.low) / 2 ** converter.bits
   const results = tryAll(design)
   const ranked = results
     .map((result) => ({ result, rank: result.ok ? rankTrial(design, result.trial) : null }))
     .sort((a, b) => order(a) - order(b))
-  const asked = choose.arrangement
+  const asked = askedArrangement(design)
   const candidates = ranked.map(({ result, rank }) => toCandidate(design, result, rank, lsb, asked))
   const askedAt = asked === undefined ? -1 : candidates.findIndex((c) => c.arrangement === asked)
   const firstFeasible = candidates.findIndex((c) => c.feasible)
@@ -119,15 +119,15 @@ function tryAll(design: Design): TrialResult[] {
   return [...singles, ...bestSplits(design, found)]
 }
 
-/** Two-stage chains carried through to every board; the rest is sorted out on the nominal one. */
-const MOST_SPLITS = 2
+/** Two-stage chains carried through to every board, where one stage does it too and where none does. */
+const MOST_SPLITS = { beside: 1, alone: 2 }
 
 /**
  * Of all splits of one pair of arrangements the best on the nominal board is kept, and of the pairs the best few; pairs
  * that never exist are left out.
  */
 function bestSplits(design: Design, singleFound: boolean): TrialResult[] {
-  const asked = design.choose.arrangement
+  const asked = askedArrangement(design)
   const best = new Map<string, { split: Split; score: number }>()
   for (const split of splitsFor(design, singleFound)) {
     const result = tryTwo(design, split, 'nominal')
@@ -140,7 +140,7 @@ function bestSplits(design: Design, singleFound: boolean): TrialResult[] {
   }
   return [...best.values()]
     .sort((a, b) => a.score - b.score)
-    .slice(0, MOST_SPLITS)
+    .slice(0, singleFound ? MOST_SPLITS.beside : MOST_SPLITS.alone)
     .map(({ split }) => tryTwo(design, split, 'every-board'))
 }
 
@@ -268,18 +268,21 @@ function realise(design: Design, trial: Trial, lsb: number): Realised {
 }
 
 function filterSummary(design: Design, trial: Trial): NonNullable<Candidate['filter']> {
-  const { filter } = trial.spec
   const { sensor, converter, rules } = design
+  // Without an amplifier before it the source stands in series with the filter.
   const direct = trial.stages[0]?.arrangement.amplifiers === 0
+  const filter = direct
+    ? loadedBy(trial.spec.filter, requirementOf(design).need.sourceResistance)
+    : trial.spec.filter
   return {
     kind: filter.kind,
-    resistance: filter.resistance,
+    resistance: trial.spec.filter.resistance,
     capacitance: filter.capacitance,
     corner: filter.corner,
     droopAtBandwidth: sensor.bandwidth === undefined ? null : attenuationDb(filter, sensor.bandwidth),
     atHalfSampleRate:
       converter.sampleRate === undefined ? null : attenuationDb(filter, converter.sampleRate / 2),
-    settling: settlingTime(filter, converter.bits, rules.settling, direct ? sensor.sourceResistance : 0),
+    settling: settlingTime(filter, converter.bits, rules.settling),
   }
 }
 

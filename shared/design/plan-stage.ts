@@ -2,11 +2,12 @@ import { arrangements } from '#shared/amplifiers/index.ts'
 import type { Arrangement, Need } from '#shared/amplifiers/define.ts'
 import { assess, type AssessDepth, type Assessment } from '#shared/budget/assess.ts'
 import { guardDeficits, stateOf } from '#shared/budget/headroom.ts'
+import { toLoads } from '#shared/budget/loads.ts'
 import { sizeFilter } from '#shared/filters/rc.ts'
 import { kindOf } from '#shared/sensors/index.ts'
 import { CircuitError } from '#shared/network/circuit-error.ts'
 import { sensorContext, type ChainSpec, type StageChoice } from './chain.ts'
-import { clipReason } from './findings.ts'
+import { clipReason, loadReason } from './findings.ts'
 import type { Ends, Reason } from './plan.ts'
 import { resolveReferences } from './references.ts'
 import type { Design } from './schema.ts'
@@ -55,10 +56,20 @@ export function requirementOf(design: Design): Requirement {
 
 /** Guard bands that the plan chooses are whole multiples of this fraction of the range, so that figures stay round. */
 const GUARD_STEP = 0.0005
-const MOST_ROUNDS = 8
+const MOST_ROUNDS = 9
 
-/** Target of the chain: the converter's range less guard bands, shrunk so that readings beyond the span fit as well. */
-export function targetFor(design: Design, guard: Ends, inset: Ends, signal: Ends, beyond: Ends | null): Ends {
+/**
+ * Target of the chain: the converter's range less guard bands, shrunk so that readings beyond the span fit as well.
+ * `crossed`: the low end of the measurand lands at the top, as in an inverting chain.
+ */
+export function targetFor(
+  design: Design,
+  guard: Ends,
+  inset: Ends,
+  signal: Ends,
+  beyond: Ends | null,
+  crossed = false,
+): Ends {
   const { low, high } = design.converter.input
   const range = high - low
   const g0 = low + guard.low * range
@@ -66,8 +77,8 @@ export function targetFor(design: Design, guard: Ends, inset: Ends, signal: Ends
   if (!beyond) return { low: g0, high: g1 }
   // Shares of the span by which the readings beyond it exceed it at either end.
   const span = signal.high - signal.low
-  const below = (signal.low - beyond.low) / span
-  const above = (beyond.high - signal.high) / span
+  const past = { low: (signal.low - beyond.low) / span, high: (beyond.high - signal.high) / span }
+  const [below, above] = crossed ? [past.high, past.low] : [past.low, past.high]
   const r0 = low + inset.low
   const r1 = high - inset.high
   const size = Math.min(
@@ -137,15 +148,22 @@ function settleWith(
   let guard = policy.start
   let inset = { low: 0, high: 0 }
   let last: Trial | null = null
+  let crossed = false
   // What fails on the nominal board is not worth the vertices of every board.
   let looking: AssessDepth = 'nominal'
   for (let round = 0; round < MOST_ROUNDS; round++) {
-    const target = targetFor(design, guard, inset, signal, beyond)
+    const target = targetFor(design, guard, inset, signal, beyond, crossed)
     if (!(target.high > target.low)) break
     const sized = size(target)
     if (!sized.ok) {
       if (!last) return { ok: false, id, title, reasons: sized.reasons }
       break
+    }
+    const landing = sized.stages.at(-1)?.sized.sizing.target
+    if (beyond && landing && landing.low > landing.high !== crossed) {
+      // An inverting chain gives the readings beyond the low end at the top: its shares change places.
+      crossed = !crossed
+      continue
     }
     const trial = assessTrial(design, { id, title, stages: sized.stages, guard, target }, looking)
     if (!('spec' in trial)) return { ok: false, id, title, reasons: trial.reasons }
@@ -212,6 +230,7 @@ function assessTrial(design: Design, parts: TrialParts, depth: AssessDepth): Tri
   const reasons = assessment.pins
     .filter((pin) => stateOf(pin, design.rules) === 'over')
     .map((pin) => clipReason(design, pin))
+  for (const load of toLoads(assessment)) if (load.state === 'over') reasons.push(loadReason(load))
   if (!assessment.bound.keepsSign)
     reasons.push({
       code: 'pole-in-box',
@@ -226,7 +245,7 @@ export function trySingle(design: Design, arrangement: Arrangement): TrialResult
   const { need: base } = requirementOf(design)
   return settleChain(design, arrangement.id, arrangement.title, (target) => {
     const need: Need = { ...base, target }
-    const stage = sizeOne(design, arrangement, need, '')
+    const stage = sizeOne(design, arrangement, need, '', design.choose.pick ?? 0)
     return stage.ok
       ? { ok: true, stages: [{ ref: 'S1', arrangement, sized: stage.sized, need }] }
       : { ok: false, reasons: [stage.reason] }
@@ -234,10 +253,10 @@ export function trySingle(design: Design, arrangement: Arrangement): TrialResult
 }
 
 /** Ideal-model existence, then standard values. */
-export function sizeOne(design: Design, arrangement: Arrangement, need: Need, suffix: string) {
+export function sizeOne(design: Design, arrangement: Arrangement, need: Need, suffix: string, pick: number) {
   const considered = arrangement.consider(need)
   if (!considered.ok) return { ok: false as const, reason: considered.reason }
-  return sizeStage(design, arrangement, need, considered.sizing, suffix)
+  return sizeStage(design, arrangement, need, considered.sizing, suffix, pick)
 }
 
 /** Arrangements that take the kind of signal a sensor gives. */

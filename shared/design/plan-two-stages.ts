@@ -29,13 +29,13 @@ export interface Split {
 /** Pairs of arrangements and gain splits worth trying for a design, or the one that a person asks for. */
 export function splitsFor(design: Design, singleFound: boolean): Split[] {
   const { need } = requirementOf(design)
-  const wanted = design.choose.arrangement?.split('+')
+  const wanted = askedArrangement(design)?.split('+')
   const asked = wanted?.length === 2 ? wanted : null
   const target = { low: design.converter.input.low, high: design.converter.input.high }
   const total = Math.abs(slope({ ...need, target }, oriented({ ...need, target }, 1)))
   if (!asked && singleFound && total < LARGE_GAIN) return []
   const ids = asked?.[0] ? [asked[0]] : need.differential ? FIRST_DIFFERENTIAL : FIRST_SINGLE
-  const chosenGain = design.choose.stages?.find((s) => s.ref === 'S1')?.gain
+  const chosenGain = firstGain(design, total)
   const gains = chosenGain ? [chosenGain] : SPLITS(total).filter((g) => g > 1.2)
   const firsts = arrangementsFor(need.differential).filter((a) => ids.includes(a.id) && a.amplifiers > 0)
   const seconds = arrangementsFor(false).filter(
@@ -48,6 +48,23 @@ export function splitsFor(design: Design, singleFound: boolean): Split[] {
   )
 }
 
+/** Which arrangement a person asks for: by its id, or stage by stage. */
+export function askedArrangement(design: Design): string | undefined {
+  const { arrangement, stages } = design.choose
+  if (arrangement !== undefined) return arrangement
+  const [first, second] = (['S1', 'S2'] as const).map(
+    (ref) => stages?.find((s) => s.ref === ref)?.arrangement,
+  )
+  return first !== undefined && second !== undefined ? `${first}+${second}` : first
+}
+
+/** Gain that a person gives the first stage, directly or by what the second is to have. */
+function firstGain(design: Design, total: number): number | undefined {
+  const gain = (ref: 'S1' | 'S2') => design.choose.stages?.find((s) => s.ref === ref)?.gain
+  const second = gain('S2')
+  return gain('S1') ?? (second ? total / Math.abs(second) : undefined)
+}
+
 /**
  * Two stages: the first brings the signal to `split.gain` times its size about a level in the middle of its linear
  * region (or about ground), the second does the rest. Values are exact per stage for the split.
@@ -57,7 +74,7 @@ export function tryTwo(design: Design, split: Split, depth: AssessDepth): TrialR
   const id = `${split.first.id}+${split.second.id}`
   const title = `${split.first.title}, then ${split.second.title.charAt(0).toLowerCase()}${split.second.title.slice(1)}`
   const firstNeed: Need = { ...base, target: firstTarget(design, split, base) }
-  const first = sizeOne(design, split.first, firstNeed, '')
+  const first = sizeOne(design, split.first, firstNeed, '', 0)
   if (!first.ok) return { ok: false, id, title, reasons: [first.reason] }
   const [low, high] = first.sized.ends
   return settleChain(
@@ -75,7 +92,7 @@ export function tryTwo(design: Design, split: Split, depth: AssessDepth): TrialR
         level: null,
         target,
       }
-      const second = sizeOne(design, split.second, need, 'B')
+      const second = sizeOne(design, split.second, need, 'B', design.choose.pick ?? 0)
       return second.ok
         ? {
             ok: true,

@@ -151,7 +151,8 @@ export interface OverVoltage {
   case: string
   pinVolts: Ends
   allowed: Ends
-  clampCurrent: number
+  /** A; null where nothing limits it. */
+  clampCurrent: number | null
   clampLimit: number | null
   state: RoomState
 }

@@ -73,6 +73,14 @@ function toFaults(issue: Issue, given: unknown): Fault[] {
       }))
     case 'invalid_union':
       return [unionFault(issue, path)]
+    case 'invalid_key':
+      return [
+        {
+          path,
+          reason: `${show(issue.path.at(-1))} is no reference designator`,
+          accepted: 'up to six letters and digits, letter first, as in R1',
+        },
+      ]
     case 'invalid_value':
       return [
         {

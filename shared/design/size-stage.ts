@@ -5,6 +5,7 @@ import {
   pickValues,
   wantedValue,
   type Pick,
+  type PickResult,
   type ValueForm,
 } from '#shared/amplifiers/picker/index.ts'
 import { standardValues } from '#shared/parts/series.ts'
@@ -44,9 +45,10 @@ export function sizeStage(
   need: Need,
   sizing: Sizing,
   suffix: string,
+  pick: number,
 ): SizeResult {
   const fixed = fixedValues(design, arrangement, suffix)
-  const preset = { ...sizing.preset, ...pickKeys(fixed, Object.keys(sizing.preset ?? {})) }
+  const preset = presetValues(design, sizing, fixed)
   const form = withStageGain(sizing, preset, fixed)
   const target: [number, number] = [sizing.target.low, sizing.target.high]
   if (form === null)
@@ -64,39 +66,61 @@ export function sizeStage(
       },
     }
   const refs = formRefs(form)
-  const lists: Record<string, readonly number[]> = {}
-  for (const ref of refs) lists[ref] = listFor(design, form, ref, fixed[ref] ?? fixedCopy(sizing, fixed, ref))
-  const tolerance = design.parts.resistors.tolerance
-  const result = pickValues({
-    form,
-    target,
-    lists,
-    ...(sizing.pairs ? { pairs: sizing.pairs } : {}),
-    tolerance: Object.fromEntries(refs.map((ref) => [ref, tolerance])),
-    preferred: design.parts.resistors.preferred,
-  })
-  const allFixed = refs.every((ref) => lists[ref]?.length === 1)
-  const found: Pick[] = result.ok ? merge(result.picks, result.best) : result.closest ? [result.closest] : []
-  const anyFixed = refs.some((ref) => lists[ref]?.length === 1)
-  if (found.length === 0 || (!result.ok && !anyFixed))
+  const given: Record<string, number> = {}
+  for (const ref of refs) {
+    const value = fixed[ref] ?? fixedCopy(sizing, fixed, ref)
+    if (value !== undefined) given[ref] = value
+  }
+  const search = (held: Record<string, number>): PickResult =>
+    pickValues({
+      form,
+      target,
+      lists: Object.fromEntries(refs.map((ref) => [ref, listFor(design, form, ref, held[ref])])),
+      ...(sizing.pairs ? { pairs: sizing.pairs } : {}),
+      tolerance: Object.fromEntries(refs.map((ref) => [ref, design.parts.resistors.tolerance])),
+      preferred: design.parts.resistors.preferred,
+    })
+  const anyFixed = Object.keys(given).length > 0
+  const allFixed = refs.every((ref) => given[ref] !== undefined)
+  const free = anyFixed ? search({}) : null
+  const result = allFixed ? null : search(given)
+  const found = allFixed ? [exactly(form, target, given)] : foundIn(result)
+  if (found.length === 0 || (result?.ok === false && !anyFixed))
     return { ok: false, reason: outsideWindow(design, found[0]) }
-  const index = Math.min(suffix === '' ? (design.choose.pick ?? 0) : 0, found.length - 1)
+  const index = Math.min(pick, found.length - 1)
   const taken = found[index]
   if (!taken) return { ok: false, reason: outsideWindow(design, undefined) }
-  const values = spread(sizing, taken.values, preset, fixed)
+  // What a person fixed is measured against what the whole series would give.
+  const best = free?.ok ? free : result?.ok ? result : null
   return {
     ok: true,
     sized: {
       sizing: { ...sizing, form },
-      values,
-      picks: found.map(toEntry),
+      values: spread(sizing, taken.values, preset, fixed),
+      picks: found.map((p) => toEntry(p, best?.threshold)),
       pick: index,
-      optimum:
-        result.ok && !allFixed ? { error: result.optimum, toleranceError: result.toleranceError } : null,
+      optimum: best ? { error: best.optimum, toleranceError: best.toleranceError } : null,
       wanted: wantedValues(form, sizing, target, taken.values, refs),
       chosen: Object.keys(fixed),
       ends: evaluateForm(form, taken.values),
     },
+  }
+}
+
+const foundIn = (result: PickResult | null): Pick[] =>
+  !result ? [] : result.ok ? merge(result.picks, result.best) : result.closest ? [result.closest] : []
+
+/** The one set of values that is left when a person fixed them all. */
+function exactly(form: ValueForm, target: [number, number], values: Record<string, number>): Pick {
+  const ends = evaluateForm(form, values)
+  const span = Math.abs(target[1] - target[0])
+  return {
+    values,
+    error: Math.max(Math.abs(ends[0] - target[0]), Math.abs(ends[1] - target[1])) / span,
+    cost: 0,
+    distinct: new Set(Object.values(values)).size,
+    practical: false,
+    ends,
   }
 }
 
@@ -110,8 +134,19 @@ function fixedValues(design: Design, arrangement: Arrangement, suffix: string): 
   return fixed
 }
 
-const pickKeys = (from: Record<string, number>, keys: string[]): Record<string, number> =>
-  Object.fromEntries(Object.entries(from).filter(([key]) => keys.includes(key)))
+/** Values set by rule: the allowed value nearest to what the rule asks for, or what a person fixed. */
+function presetValues(design: Design, sizing: Sizing, fixed: Record<string, number>): Record<string, number> {
+  const { stock, series, minimum, maximum } = design.parts.resistors
+  const allowed = stock.length > 0 ? sorted(stock) : standardValues(series, minimum, maximum)
+  const nearest = (value: number) =>
+    allowed.reduce(
+      (a, b) => (Math.abs(Math.log(b / value)) < Math.abs(Math.log(a / value)) ? b : a),
+      allowed[0] ?? value,
+    )
+  return Object.fromEntries(
+    Object.entries(sizing.preset ?? {}).map(([ref, value]) => [ref, fixed[ref] ?? nearest(value)]),
+  )
+}
 
 /** A copy that a person fixed speaks for its original where that is free. */
 function fixedCopy(sizing: Sizing, fixed: Record<string, number>, ref: string): number | undefined {
@@ -171,7 +206,7 @@ function withStageGain(
   return { ...form, stageGain: (fixed.R5 ?? r3) / r3 }
 }
 
-/** Picked values, presets and matched copies; a fixed value stands over all. */
+/** Picked values, presets and matched copies, in order, so that the copy of a fixed copy follows it. */
 function spread(
   sizing: Sizing,
   picked: Record<string, number>,
@@ -180,7 +215,7 @@ function spread(
 ): Record<string, number> {
   const values: Record<string, number> = { ...preset, ...picked }
   for (const [copy, original] of Object.entries(sizing.copies ?? {})) {
-    const value = values[original]
+    const value = fixed[copy] ?? values[original]
     if (value !== undefined) values[copy] = value
   }
   return { ...values, ...fixed }
@@ -191,7 +226,7 @@ function wantedValues(
   sizing: Sizing,
   target: [number, number],
   values: Record<string, number>,
-  refs: string[],
+  refs: readonly string[],
 ): Record<string, number> {
   const wanted: Record<string, number> = {}
   for (const ref of refs) {
@@ -212,12 +247,12 @@ function merge(picks: Pick[], best: Pick[]): Pick[] {
   return [...picks, ...best.filter((p) => !seen.has(key(p)))]
 }
 
-const toEntry = (pick: Pick): PickEntry => ({
+const toEntry = (pick: Pick, threshold: number | undefined): PickEntry => ({
   values: pick.values,
   error: pick.error,
   cost: pick.cost,
   distinct: pick.distinct,
-  practical: pick.practical,
+  practical: threshold === undefined ? pick.practical : pick.error <= threshold * (1 + 1e-12),
   ends: { low: pick.ends[0], high: pick.ends[1] },
 })
 

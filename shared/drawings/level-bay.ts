@@ -1,6 +1,7 @@
 import type { Level } from '#shared/design/plan.ts'
 import { formatQuantity, formatRoom } from '#shared/units/format-quantity.ts'
 import { verticalDimension } from './dimension.ts'
+import { levelLabels, limitLabels, OVERHANG, type BayPlace } from './level-labels.ts'
 import {
   bothEnds,
   clipText,
@@ -13,19 +14,9 @@ import {
   type LimitSide,
 } from './level-figures.ts'
 import { held, type BayScale, type LevelMeasures } from './level-scale.ts'
-import { line, path, polyline, rect, text, type Shape, type TextShape } from './shapes.ts'
+import { line, overlaps, path, polyline, rect, text, type Box, type Shape, type TextShape } from './shapes.ts'
+import { textBox } from './text-width.ts'
 
-export interface BayPlace {
-  level: Level
-  scale: BayScale
-  /** Left side of the opening. */
-  x: number
-  first: boolean
-  editing: boolean
-}
-
-/** Limits reach this far past the sides. */
-const OVERHANG = 5
 /** From this gap on the dimension line stands inside it. */
 const INSIDE = 44
 
@@ -81,8 +72,7 @@ export function bayShapes(place: BayPlace, measures: LevelMeasures, options: Fig
     ...arch,
     ...limitLabels(place, measures, options),
     ...levelLabels(place, measures, options, { upper: isOver('upper'), lower: isOver('lower') }),
-    ...roomShapes(place, measures, options, 'upper'),
-    ...roomShapes(place, measures, options, 'lower'),
+    ...bothRooms(place, measures, options),
   )
   return shapes
 }
@@ -137,60 +127,20 @@ function unknownShapes({ scale, x }: BayPlace, { bay, text: size }: LevelMeasure
   ]
 }
 
-function limitLabels(
-  { level, scale, x }: BayPlace,
-  measures: LevelMeasures,
-  options: FigureOptions,
-): Shape[] {
-  const figures = bothEnds(level.region.low, level.region.high, level.unit, options.decimalSign)
-  const bare = (figure: string) => (measures.limitUnits ? figure : (figure.split(' ')[0] ?? figure))
-  const label = (y: number, content: string) =>
-    text('limit-value', x - OVERHANG - 4, y + 4, content, 'end', { on: 'sheet', scale: measures.text })
-  return [label(scale.upper, bare(figures.high)), label(scale.lower, bare(figures.low))]
-}
-
-/** Level figures at the right; the measurand's ends at the first bay; the clip point under a figure that is over. */
-function levelLabels(
-  { level, scale, x, first }: BayPlace,
-  { bay, text: size }: LevelMeasures,
-  options: FigureOptions,
-  over: Record<LimitSide, boolean>,
-): Shape[] {
-  const nominal = reachOf(level, false)
-  const figures = bothEnds(nominal.low, nominal.high, level.unit, options.decimalSign)
-  const { quantity } = options
-  const second = (side: LimitSide): Pick<TextShape, 'text' | 'style'> | null => {
-    if (over[side]) {
-      const clip = clipText(level, side, options)
-      return clip === null ? null : { text: `at ${clip}`, style: 'clip-value' }
-    }
-    const end = (side === 'upper') === rises(level) ? quantity.high : quantity.low
-    if (!first || end === undefined) return null
-    const decimalSign = options.decimalSign ?? '.'
-    return { text: formatQuantity(end, quantity.unit, { decimalSign }), style: 'measurand-value' }
+/** Both rooms; where there is no place for two figures the smaller room keeps its own. */
+function bothRooms(place: BayPlace, measures: LevelMeasures, options: FigureOptions): Shape[] {
+  const sides = {
+    upper: roomShapes(place, measures, options, 'upper'),
+    lower: roomShapes(place, measures, options, 'lower'),
   }
-  const upper = { y: held(scale, nominal.high).y, more: second('upper') }
-  const lower = { y: held(scale, nominal.low).y, more: second('lower') }
-  const STEP = 14 * size
-  const need = 13 * size + (upper.more ? STEP : 0) + (lower.more ? STEP : 0)
-  const lack = need - (lower.y - upper.y)
-  if (lack > 0) {
-    upper.y -= lack / 2
-    lower.y += lack / 2
-  }
-  const at = x + bay + 8
-  const more = (entry: typeof upper, dy: number): Shape[] =>
-    entry.more
-      ? [text(entry.more.style, at, entry.y + 4 + dy, entry.more.text, 'start', { on: 'sheet', scale: size })]
-      : []
-  const label = (side: LimitSide, y: number, content: string) =>
-    text(over[side] ? 'over-value' : 'level-value', at, y + 4, content, 'start', { on: 'sheet', scale: size })
-  return [
-    label('upper', upper.y, figures.high),
-    ...more(upper, STEP),
-    label('lower', lower.y, figures.low),
-    ...more(lower, -STEP),
-  ]
+  const isText = (shape: Shape): shape is TextShape => shape.type === 'text'
+  const meets = sides.upper
+    .filter(isText)
+    .some((a) => sides.lower.filter(isText).some((b) => overlaps(textBox(a), textBox(b))))
+  if (!meets) return [...sides.upper, ...sides.lower]
+  const room = (side: LimitSide) => roomOf(place.level, side, options.worst)
+  const quiet: LimitSide = room('upper') > room('lower') ? 'upper' : 'lower'
+  return [...sides.upper, ...sides.lower].filter((shape) => !(isText(shape) && sides[quiet].includes(shape)))
 }
 
 /** Room as a dimension line in the bay, heads turned where the gap is small; the figure in words where it is over. */

@@ -1,11 +1,13 @@
 import type { Ends, Level } from '#shared/design/plan.ts'
 import { formatNumber, formatQuantity } from '#shared/units/format-quantity.ts'
-import { bayShapes, type BayPlace } from './level-bay.ts'
+import { bayShapes } from './level-bay.ts'
+import { limitLabels, type BayPlace } from './level-labels.ts'
 import { levelKey } from './level-key.ts'
 import { bothEnds, isKnown, rises, type FigureOptions } from './level-figures.ts'
 import { levelMarks, type Mark } from './level-marks.ts'
 import { held, shareScale, sheetMeasures, voltScales, type LevelMeasures } from './level-scale.ts'
-import { line, text, type Box, type Shape } from './shapes.ts'
+import { line, text, type Box, type Shape, type TextShape } from './shapes.ts'
+import { textBox } from './text-width.ts'
 
 export type LevelMode = 'share' | 'volts'
 
@@ -46,13 +48,20 @@ export function layoutLevelDiagram(levels: readonly Level[], options: LevelOptio
     options.mode === 'volts'
       ? voltScales(levels, measures)
       : levels.map((level) => shareScale(level, measures))
-  const places: BayPlace[] = levels.map((level, i) => ({
+  const bare = levels.map((level, i) => ({
     level,
     scale: scales[i] ?? shareScale(level, measures),
     x: measures.gutter + measures.limits + i * measures.column,
     first: i === 0,
     editing: options.editing !== undefined && options.editing !== null && level.node === options.editing,
   }))
+  const places: BayPlace[] = bare.map((place, i) => {
+    const next = bare[i + 1]
+    const right = next
+      ? [...limitLabels(next, measures, options), ...gainLabel(place, next, measures, options)]
+      : []
+    return { ...place, taken: right.map(textBox) }
+  })
   const bays = places.map((place): LevelBay => ({
     node: place.level.node,
     title: place.level.title,
@@ -118,24 +127,31 @@ function linkShapes(from: BayPlace, to: BayPlace, measures: LevelMeasures): Shap
   )
 }
 
+type Placed = Pick<BayPlace, 'level' | 'scale' | 'x'>
+
 function headingShapes(
-  place: BayPlace,
-  next: BayPlace | undefined,
+  place: Placed,
+  next: Placed | undefined,
   measures: LevelMeasures,
   options: LevelOptions,
 ): Shape[] {
   const scale = measures.text
   const middle = place.x + measures.bay / 2
   const times = place.scale.times === 1 ? '' : ` × ${formatNumber(place.scale.times)}`
-  const shapes: Shape[] = [
+  return [
     text('title', middle, measures.top - 31, `${place.level.title}${times}`, 'middle', { scale }),
+    ...(next ? gainLabel(place, next, measures, options) : []),
   ]
-  if (next && next.level.gain !== null) {
-    const gain = formatNumber(next.level.gain, { decimalSign: options.decimalSign ?? '.' })
-    const between = (place.x + measures.bay + next.x) / 2
-    shapes.push(text('gain', between, measures.top - 11, `× ${gain}`, 'middle', { scale, on: 'sheet' }))
-  }
-  return shapes
+}
+
+/** "× 100.8" between two bays. */
+function gainLabel(place: Placed, next: Placed, measures: LevelMeasures, options: LevelOptions): TextShape[] {
+  if (next.level.gain === null) return []
+  const gain = formatNumber(next.level.gain, { decimalSign: options.decimalSign ?? '.' })
+  const between = (place.x + measures.bay + next.x) / 2
+  return [
+    text('gain', between, measures.top - 11, `× ${gain}`, 'middle', { scale: measures.text, on: 'sheet' }),
+  ]
 }
 
 /** One sentence that names the drawing: how many nodes, which is worst. */

@@ -88,10 +88,13 @@ class Plot {
     const { quantity, linear, region, converter } = input
     this.span = { low: Math.min(quantity.low, quantity.high), high: Math.max(quantity.low, quantity.high) }
     const width = this.span.high - this.span.low
-    this.linear = {
-      low: Math.max(linear.low ?? -Infinity, this.span.low - FARTHEST * width),
-      high: Math.min(linear.high ?? Infinity, this.span.high + FARTHEST * width),
+    const shown = (value: number | null, end: number, away: 1 | -1) => {
+      const past = ((value ?? end) - end) * away
+      return value === null || past > FARTHEST * width
+        ? end + away * (value === null ? PAST : FARTHEST) * width
+        : value
     }
+    this.linear = { low: shown(linear.low, this.span.low, -1), high: shown(linear.high, this.span.high, 1) }
     this.domain = {
       low: Math.min(this.span.low, this.linear.low) - PAST * width,
       high: Math.max(this.span.high, this.linear.high) + PAST * width,
@@ -141,7 +144,11 @@ class Plot {
         path('room', `M${x1} ${y1}L${x2} ${y2}L${x1} ${y2}Z`),
       ]
     }
-    return [...corner(this.linear.low, this.span.low), ...corner(this.span.high, this.linear.high)]
+    const { linear } = this.input
+    return [
+      ...(linear.low === null ? [] : corner(this.linear.low, this.span.low)),
+      ...(linear.high === null ? [] : corner(this.span.high, this.linear.high)),
+    ]
   }
 
   /** The line in its linear part, then flat past the limits. */
@@ -170,17 +177,38 @@ class Plot {
   /** Highest and lowest board, straight between the ends of the required span, where they part from the nominal. */
   worstPair(): Shape[] {
     const { quantity, worst, nominal } = this.input
-    const ends = ['low', 'high'] as const
-    return ends.flatMap((which): Shape[] => {
-      const a: Point = [this.x(quantity.low), this.y(worst.low[which])]
-      const b: Point = [this.x(quantity.high), this.y(worst.high[which])]
-      const apart = Math.max(Math.abs(a[1] - this.y(nominal.low)), Math.abs(b[1] - this.y(nominal.high)))
-      return apart < 1.5 ? [] : [polyline('worst', [a, b])]
+    return (['low', 'high'] as const).flatMap((which): Shape[] => {
+      const apart = Math.max(
+        Math.abs(this.y(worst.low[which]) - this.y(nominal.low)),
+        Math.abs(this.y(worst.high[which]) - this.y(nominal.high)),
+      )
+      if (apart < 1.5) return []
+      const points = this.withinRegion([quantity.low, worst.low[which]], [quantity.high, worst.high[which]])
+      return [
+        polyline(
+          'worst',
+          points.map(([q, v]) => [this.x(q), this.y(v)] as const),
+        ),
+      ]
     })
   }
 
+  /** A straight line in measurand and volts, kept flat where it would leave the linear region. */
+  private withinRegion(from: Point, to: Point): Point[] {
+    const { low, high } = this.input.region
+    const held = (v: number) => Math.min(high, Math.max(low, v))
+    const crossings = [low, high]
+      .map((limit) => (limit - from[1]) / (to[1] - from[1]))
+      .filter((share) => share > 0 && share < 1)
+      .sort((a, b) => a - b)
+    return [0, ...crossings, 1].map((share) => [
+      from[0] + share * (to[0] - from[0]),
+      held(from[1] + share * (to[1] - from[1])),
+    ])
+  }
+
   private quantityTicks(): number[] {
-    return ticks(this.domain.low, this.domain.high, 6)
+    return ticks(this.domain.low, this.domain.high, 8)
   }
 
   private voltTicks(): number[] {
@@ -247,7 +275,7 @@ class Plot {
 
   /** Under the plot: room, required span, room; then the linear span of every board. At the right: codes used. */
   dimensions(): Shape[] {
-    const { quantity, worstLinear, nominal, codesUsed, converter } = this.input
+    const { quantity, worstLinear, codesUsed, converter } = this.input
     const row = this.area.y + this.area.height + 52
     const { low, high } = this.span
     const sign = { decimalSign: this.decimalSign }
@@ -263,14 +291,12 @@ class Plot {
       drop(high, row),
       ...horizontalDimension(row, this.x(low), this.x(high), `required ${required}`),
     ]
-    const room = (from: number, to: number): Shape[] => {
-      const width = this.x(to) - this.x(from)
-      if (width < 34) return []
-      const words = formatQuantity(to - from, quantity.unit, { digits: 3, rounding: 'down', ...sign })
-      return horizontalDimension(row, this.x(from), this.x(to), words, 'clear')
-    }
-    if (worstLinear.low !== null && worstLinear.low < low) shapes.push(...room(linear.low, low))
-    if (worstLinear.high !== null && worstLinear.high > high) shapes.push(...room(high, linear.high))
+    if (worstLinear.low !== null && worstLinear.low < low)
+      shapes.push(...roomDimension(row, this.x(linear.low), this.x(low), this.words(low - worstLinear.low)))
+    if (worstLinear.high !== null && worstLinear.high > high)
+      shapes.push(
+        ...roomDimension(row, this.x(linear.high), this.x(high), this.words(worstLinear.high - high)),
+      )
     if (worstLinear.low !== null || worstLinear.high !== null) {
       const words =
         worstLinear.low === null
@@ -285,7 +311,8 @@ class Plot {
       )
     }
     const column = this.area.x + this.area.width + 68
-    const [y1, y2] = [this.y(nominal.low), this.y(nominal.high)]
+    const reached = (value: number) => this.y(readTransfer(this.input, value).volts)
+    const [y1, y2] = [reached(quantity.low), reached(quantity.high)]
     const used = `${formatNumber(codesUsed, { digits: 10, ...sign })} of ${formatNumber(2 ** converter.bits, { digits: 10, ...sign })}`
     const beside = (y: number) => line('extension', this.area.x + this.area.width, y, column + 3, y)
     return [
@@ -295,6 +322,11 @@ class Plot {
       ...verticalDimension(column, y1, y2, 'plain', Math.abs(y1 - y2) < 24),
       text('dim-text', column + 14, (y1 + y2) / 2, `${used} codes`, 'middle', { turned: true, on: 'sheet' }),
     ]
+  }
+
+  private words(room: number): string {
+    const { unit } = this.input.quantity
+    return formatQuantity(room, unit, { digits: 3, rounding: 'down', decimalSign: this.decimalSign })
   }
 
   cursor(value: number): Shape[] {
@@ -308,6 +340,28 @@ class Plot {
       rect('cursor', { x: x - 2, y: top + height - 2, width: 4, height: 4 }),
     ]
   }
+}
+
+/**
+ * Room beside the required span on the same row. Where it is narrow its head stands outside with the figure behind it;
+ * the head at the required span is the one of that dimension.
+ */
+function roomDimension(y: number, limit: number, end: number, words: string): Shape[] {
+  const away = limit < end ? -1 : 1
+  if (Math.abs(end - limit) >= 46) return horizontalDimension(y, limit, end, words, 'clear')
+  return [
+    line('dim-clear', limit, y, limit + away * 16, y),
+    polyline(
+      'head-clear',
+      [
+        [limit, y],
+        [limit + away * 5.2, y - 1.56],
+        [limit + away * 5.2, y + 1.56],
+      ],
+      true,
+    ),
+    text('room-clear', limit + away * 20, y + 4, words, away < 0 ? 'end' : 'start', { on: 'sheet' }),
+  ]
 }
 
 /** Ticks with the same number of places. */

@@ -87,13 +87,15 @@ function capacitorValues(design: Design): readonly number[] {
  * Time for a full-span step to settle to `criterion` LSB through one pole: τ·ln(2^N/criterion)
  * (method: converter settling by the number of time constants; s).
  */
-export function settlingTime(
-  filter: RcFilter,
-  bits: number,
-  criterion: number,
-  sourceResistance = 0,
-): number {
-  return (filter.resistance + sourceResistance) * filter.capacitance * Math.log(2 ** bits / criterion)
+export function settlingTime(filter: RcFilter, bits: number, criterion: number): number {
+  return filter.resistance * filter.capacitance * Math.log(2 ** bits / criterion)
+}
+
+/** The filter with a source resistance (Ω) in series: what the signal really meets. */
+export function loadedBy(filter: RcFilter, sourceResistance: number): RcFilter {
+  if (filter.kind === 'none') return filter
+  const resistance = filter.resistance + sourceResistance
+  return { ...filter, resistance, corner: 1 / (2 * Math.PI * resistance * filter.capacitance) }
 }
 
 /** Attenuation of one pole at a frequency, dB (positive: weaker). */

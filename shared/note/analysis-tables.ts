@@ -81,7 +81,7 @@ export function toModelTable(entries: readonly ModelEntry[]): Table {
         entry.amplifier,
         upward(entry.inputVolts, 'V'),
         upward(entry.inputAmps, 'A'),
-        `${formatQuantity(20 * Math.log10(Math.abs(entry.loopGain)), '', { digits: 4 })} dB`,
+        entry.loopGain === null ? NONE : decibels(entry.loopGain),
         atLeast(entry.gainErrorPpm, 0.01, 'ppm'),
         atLeast(entry.gainErrorLsb, 0.001, 'LSB'),
         entry.atBandwidthLsb === null ? NONE : atLeast(entry.atBandwidthLsb, 0.001, 'LSB'),
@@ -93,6 +93,9 @@ export function toModelTable(entries: readonly ModelEntry[]): Table {
     })),
   }
 }
+
+const decibels = (ratio: number): string =>
+  `${formatQuantity(20 * Math.log10(Math.abs(ratio)), '', { digits: 4 })} dB`
 
 /** Below `floor` the figure itself says nothing more. */
 const atLeast = (value: number, floor: number, unit: string): string =>
@@ -157,7 +160,7 @@ export function toOverVoltageTable(cases: readonly OverVoltage[]): Table {
         sentence(entry.case).slice(0, -1),
         reached(entry.pinVolts, 'V'),
         formatRange(entry.allowed.low, entry.allowed.high, 'V', { unitOnce: true, rounding: 'inward' }),
-        upward(entry.clampCurrent, 'A'),
+        entry.clampCurrent === null ? 'not limited' : upward(entry.clampCurrent, 'A'),
         entry.clampLimit === null ? NONE : figure(entry.clampLimit, 'A'),
         '',
       ],

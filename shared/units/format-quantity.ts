@@ -78,6 +78,20 @@ export function formatRange(low: number, high: number, unit: string, options: Ra
 }
 
 /**
+ * A figure against the one it is held to, with one prefix: "12 of 15 mm". Both are rounded in the same direction, the
+ * first to `digits` significant digits (2).
+ */
+export function formatOf(value: number, whole: number, unit: string, options: FormatOptions = {}): string {
+  if (!Number.isFinite(value) || !Number.isFinite(whole)) return UNKNOWN
+  const scale = scaleFor(Math.max(Math.abs(value), Math.abs(whole)), unit, options)
+  const text = (figure: number, decimals: number) =>
+    toFixedText(figure, decimals, options.rounding, scale.exponent)
+  const decimals = decimalsFor(value, options.digits ?? 2, scale.exponent)
+  const held = trimZeros(text(whole, decimalsFor(whole, Math.max(4, options.digits ?? 2), scale.exponent)))
+  return `${finish(text(value, decimals), options)} of ${withUnit(finish(held, options), scale.unit)}`
+}
+
+/**
  * Room as a share of the linear region, one decimal of a per cent and never better than it is:
  * 0.0568 is "5.6 %", −0.0341 is "3.5 % over".
  */
@@ -134,7 +148,7 @@ function scaleFor(magnitude: number, unit: string, options: FormatOptions): Scal
 function engineeringExponent(magnitude: number, unit: string, digits: number): number {
   const printed = printedPrefixes(unit)
   if (printed === null || magnitude === 0) return 0
-  if (plainFromTenth.has(unit) && magnitude >= 0.1 && magnitude < 999.5) return 0
+  if (plainFromTenth.has(unit.split('/')[0] ?? '') && magnitude >= 0.1 && magnitude < 999.5) return 0
   const rounded = Number(magnitude.toPrecision(Math.min(15, Math.max(1, digits))))
   const exponent = Math.floor(Math.floor(Number(rounded.toExponential().split('e')[1])) / 3) * 3
   return Math.min(printed[1], Math.max(printed[0], exponent))
@@ -142,7 +156,7 @@ function engineeringExponent(magnitude: number, unit: string, digits: number): n
 
 /** As above; a field has no need of the limits that printing keeps. */
 function editableExponent(magnitude: number, unit: string): number {
-  if (unit === 'm') return 0
+  if (unit.split('/')[0] === 'm') return 0
   if (unit === 'Ω or F') return engineeringExponent(magnitude, magnitude >= 1 ? 'Ω' : 'F', 15)
   const exponent = engineeringExponent(magnitude, unit, 15)
   return exponent > 0 ? engineeringExponent(magnitude, 'Hz', 15) : exponent

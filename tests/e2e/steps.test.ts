@@ -24,20 +24,23 @@ describe('the steps of a plan', () => {
     ['light', 1440],
     ['dark', 375],
   ] as const)('in %s at %i px', (theme, width) => {
-    it.each([['', 'Plan'], ...steps])('%s has nothing that axe objects to', async (step, title) => {
-      const { page, complaints, close } = await app.open({ theme, width })
-      await page.goto(step === '' ? '/' : `/plan/${step}`)
-      await page.locator('[data-testid=answers]').waitFor()
-      await expect.poll(() => page.title()).toMatch(new RegExp(`^${title}`))
-      // Folded groups hold fields as well.
-      await page.evaluate(() => {
-        for (const fold of document.querySelectorAll<HTMLDetailsElement>('details.plan-fold'))
-          fold.open = true
-      })
-      await expectAccessible(page, `${step || 'front page'}, ${theme}, ${width}`)
-      expect(complaints).toEqual([])
-      await close()
-    })
+    it.each<readonly [string, string]>([['', 'Plan'], ...steps])(
+      '%s has nothing that axe objects to',
+      async (step, title) => {
+        const { page, complaints, close } = await app.open({ theme, width })
+        await page.goto(step === '' ? '/' : `/plan/${step}`)
+        await page.locator('[data-testid=answers]').waitFor()
+        await expect.poll(() => page.title()).toMatch(new RegExp(`^${title}`))
+        // Folded groups hold fields as well.
+        await page.evaluate(() => {
+          for (const fold of document.querySelectorAll<HTMLDetailsElement>('details.plan-fold'))
+            fold.open = true
+        })
+        await expectAccessible(page, `${step || 'front page'}, ${theme}, ${width}`)
+        expect(complaints).toEqual([])
+        await close()
+      },
+    )
   })
 
   it.each([320, 768, 1024, 1920])('fit a page of %i px without scrolling sideways', async (width) => {

@@ -2,7 +2,13 @@ import type { Channel } from '#shared/api/channels.ts'
 import type { Candidate, Fault, Level, Plan, RoomState } from '#shared/design/plan.ts'
 import type { DesignDocument } from '#shared/design/schema.ts'
 import { sensorKinds } from '#shared/sensors/index.ts'
-import { formatQuantity, formatRange, formatRoom, type DecimalSign } from '#shared/units/format-quantity.ts'
+import {
+  formatOf,
+  formatQuantity,
+  formatRange,
+  formatRoom,
+  type DecimalSign,
+} from '#shared/units/format-quantity.ts'
 
 /** What the list says about a channel, from its document and its plan. Words and figures only, no markup. */
 
@@ -104,7 +110,14 @@ export function errorWords(plan: Plan | null, document: Draft, decimalSign: Deci
     formatQuantity(value, quantity?.unit ?? '', { digits: 2, rounding: 'up', zeros: 'keep', decimalSign })
   if (error === null)
     return { error, target, text: target === null ? 'not known' : `target ${figure(target)}` }
-  return { error, target, text: target === null ? figure(error) : `${figure(error)} of ${figure(target)}` }
+  return {
+    error,
+    target,
+    text:
+      target === null
+        ? figure(error)
+        : formatOf(error, target, quantity?.unit ?? '', { rounding: 'up', decimalSign }),
+  }
 }
 
 /** Room that the channel's own rule keeps; 3 % where the draft says nothing. */

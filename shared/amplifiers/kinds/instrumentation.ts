@@ -79,7 +79,7 @@ export const threeAmplifier = withLevels({
     signal: signalEnds(need),
     level,
   }),
-  copies: () => ({ R2: 'R1', R4: 'R3', R5: 'R3', R6: 'R3' }),
+  copies: () => ({ R2: 'R1', R4: 'R3', R5: 'R3', R6: 'R5' }),
   preset: (need) => ({ R3: need.parts.resistors.preferred }),
   build(stage, values, level) {
     const [minus1, minus2, out1, out2] = ['m1', 'm2', 'o1', 'o2'].map((n) => stage.node(n)) as [

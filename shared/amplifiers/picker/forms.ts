@@ -129,13 +129,11 @@ export type ValueForm =
 export type FormKind = ValueForm['kind']
 
 /** Refs of the resistors that a form needs a value for, in the order in which ties are settled (by name). */
-export function formRefs(form: ValueForm): string[] {
+export function formRefs(form: ValueForm): readonly string[] {
   const refs = gainRefs(form)
-  if ('level' in form && 'reference' in form.level) {
-    const { upper, lower } = levelRefs(form.level)
-    refs.push(upper, lower)
-  }
-  return refs.sort(byName)
+  if (!('level' in form) || 'volts' in form.level) return refs
+  const { upper, lower } = levelRefs(form.level)
+  return [...refs, upper, lower].sort(byName)
 }
 
 /** Refs of the divider that makes a level. */
@@ -152,31 +150,36 @@ function byName(a: string, b: string): number {
   return a < b ? -1 : a > b ? 1 : 0
 }
 
-function gainRefs(form: ValueForm): string[] {
+const R12 = ['R1', 'R2']
+const R123 = ['R1', 'R2', 'R3']
+const FEEDBACK = ['Rf', 'Rg']
+const DIVIDER_AND_FEEDBACK = ['R1', 'R2', 'Rf', 'Rg']
+
+function gainRefs(form: ValueForm): readonly string[] {
   switch (form.kind) {
     case 'attenuator':
     case 'difference':
-      return ['R1', 'R2']
+      return R12
     case 'level-shift':
-      return ['R1', 'R2', 'R3']
+      return R123
     case 'non-inverting':
     case 'inverting':
-      return ['Rf', 'Rg']
+      return FEEDBACK
     case 'non-inverting-up':
     case 'non-inverting-down':
     case 'inverting-up':
-      return ['R1', 'R2', 'Rf', 'Rg']
+      return DIVIDER_AND_FEEDBACK
     case 'weighted-difference':
-      return ['R1', 'R2', 'R3', 'R4']
+      return [...R123, 'R4']
     case 'inverting-down':
-      return ['Rf', 'Rg', 'Rs']
+      return [...FEEDBACK, 'Rs']
     case 'gain-pair': {
       const { upper, lower } = pairRefs(form)
-      return [upper, lower]
+      return [upper, lower].sort(byName)
     }
     case 'gain-single':
       return ['Rg']
     case 'two-amplifier':
-      return form.withGainResistor ? ['R2', 'Rg'] : ['R1', 'R2']
+      return form.withGainResistor ? ['R2', 'Rg'] : R12
   }
 }

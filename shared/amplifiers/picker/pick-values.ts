@@ -43,6 +43,14 @@ export function pickValues(request: PickRequest): PickResult {
   return prepared ? new Picker(request, prepared).pick() : { ok: false, reason: 'no-allowed-pair' }
 }
 
+interface Weight {
+  /** What the tolerances take at the two ends, V. */
+  spread: Pair
+  /** T and max(E_min, T/10), fractions of the span. */
+  toleranceError: number
+  threshold: number
+}
+
 class Picker {
   private readonly count: number
   private readonly refs: readonly string[]
@@ -65,22 +73,20 @@ class Picker {
       if (!closest) return { ok: false, reason: allows ? 'no-allowed-pair' : 'outside-window' }
       if (!fixed) return { ok: false, reason: 'outside-window', closest: this.toPick(closest, LARGEST_ERROR) }
     }
-    const { toleranceError, threshold } = this.weigh(target, nearest)
+    const weight = this.weigh(target, nearest)
+    const { toleranceError, threshold } = weight
     return {
       ok: true,
       optimum: Math.min(...nearest.map((found) => found.error)) / spanOf(target),
       toleranceError,
       threshold,
-      picks: this.findPractical(nearest).map((found) => this.toPick(found, threshold)),
+      picks: this.findPractical(weight).map((found) => this.toPick(found, threshold)),
       best: nearest.map((found) => this.toPick(found, threshold)),
     }
   }
 
-  /** T at the pick with the smallest error, V at both ends and as a fraction of the span, and the threshold. */
-  private weigh(
-    target: Pair,
-    nearest: readonly Found[],
-  ): { spread: Pair; toleranceError: number; threshold: number } {
+  /** What an error is weighed against, at the pick with the smallest one. */
+  private weigh(target: Pair, nearest: readonly Found[]): Weight {
     const { form, tolerance } = this.request
     const first = nearest[0] as Found
     const spread = toleranceErrors(form, this.toRecord(first.values), tolerance, this.refs)
@@ -90,19 +96,19 @@ class Picker {
   }
 
   /** The cheapest picks within the threshold; with `inside`, of those that stay inside. */
-  private findPractical(nearest: readonly Found[]): readonly Found[] {
+  private findPractical(asked: Weight): readonly Found[] {
     let { target } = this.request
-    let optimal = nearest
+    let { spread, threshold } = asked
     for (let shrinks = 0; ; shrinks++) {
-      const { spread, threshold } = this.weigh(target, optimal)
       const found = this.findCheapest(target, threshold)
       if (found.length > 0 || !this.request.inside || shrinks === SHRINKS) return found
       const rise = Math.sign(target[1] - target[0])
       const shrunk: Pair = [target[0] + rise * spread[0], target[1] - rise * spread[1]]
       if (spread[0] + spread[1] === 0 || Math.sign(shrunk[1] - shrunk[0]) !== rise) return found
-      optimal = this.findNearest(shrunk)
+      const optimal = this.findNearest(shrunk)
       if (optimal.length === 0) return found
       target = shrunk
+      ;({ spread, threshold } = this.weigh(target, optimal))
     }
   }
 

@@ -4,7 +4,8 @@ import { type Beta, type PairLegs, toProblem } from './problem.ts'
 import type { PairLimit } from './request.ts'
 import type { BetaTask, Task } from './search.ts'
 import type { Members, Slots } from './short-list.ts'
-import { listCosts, toValueList, type ValueList } from './value-list.ts'
+import type { SortedIndex } from './sorted-index.ts'
+import { listCosts, partOf, toValueList, type ValueList } from './value-list.ts'
 
 /** A form with its allowed values, ready to be searched for any target. */
 export interface Prepared {
@@ -30,25 +31,29 @@ export function prepare(
   preferred: number,
 ): Prepared | null {
   const refs = formRefs(form)
-  const stray = limits.flatMap((limit) => limit.refs).find((ref) => !refs.includes(ref))
-  if (stray !== undefined) throw new RangeError(`A demand names ${stray}, which the arrangement has not`)
-  const allowed = refs.map((ref) => allowedValues(form, ref, lists[ref]))
-  if (allowed.some((list) => list.values.length === 0)) return null
-
+  for (const limit of limits) {
+    const stray = limit.refs.find((ref) => !refs.includes(ref))
+    if (stray !== undefined) throw new RangeError(`A demand names ${stray}, which the arrangement has not`)
+  }
   const { alpha, beta, lines, ideal } = toProblem(form)
-  const constant = [alpha?.upper, beta.kind === 'pair' ? beta.legs.upper : null].find(
-    (leg) => typeof leg === 'number',
-  )
-  const all = [...allowed, constant === undefined ? NOTHING : toValueList([constant]), NOTHING]
+  const all: ValueList[] = []
+  let combinations = 1
+  for (const ref of refs) {
+    const list = allowedValues(form, ref, lists[ref])
+    combinations *= list.values.length
+    all.push(list)
+  }
+  if (combinations === 0) return null
+  all.push(constantOf(alpha, beta), NOTHING)
   const places = new Places(refs, all, preferred)
 
   const firstBounds = alpha && boundsOf(limits, alpha.upper, alpha.lower)
   const first = alpha ? places.pair(alpha, firstBounds, isPlain(alpha)) : places.nothing()
   const second = places.beta(beta, limits, alpha !== null)
   if (!first || !second) return null
-  const taken = [firstBounds, second.bounds]
-  const rest = limits.filter((limit) => !taken.some((bounds) => bounds?.from.includes(limit)))
-  const combinations = allowed.reduce((product, list) => product * list.values.length, 1)
+  const rest = limits.filter(
+    (limit) => !firstBounds?.from.includes(limit) && !second.bounds?.from.includes(limit),
+  )
   return {
     task: {
       slots: places.slots,
@@ -72,6 +77,13 @@ export function prepare(
   }
 }
 
+/** The resistor inside a part that a pair is made with, if there is one. */
+function constantOf(alpha: PairLegs | null, beta: Beta): ValueList {
+  if (alpha && typeof alpha.upper === 'number') return toValueList([alpha.upper])
+  if (beta.kind === 'pair' && typeof beta.legs.upper === 'number') return toValueList([beta.legs.upper])
+  return NOTHING
+}
+
 interface Bounds extends PairBounds {
   from: readonly PairLimit[]
 }
@@ -89,13 +101,16 @@ class Places {
   ) {
     this.constant = refs.length
     this.none = refs.length + 1
-    this.slots = {
-      refs,
-      values: lists.map((list) => list.values),
-      indices: lists.map((list) => list.index),
+    const values: Float64Array[] = []
+    const indices: SortedIndex[] = []
+    const costs: Float64Array[] = []
+    for (const list of lists) {
+      values.push(list.values)
+      indices.push(list.index)
       // What stands for no part costs nothing.
-      costs: lists.map((list, slot) => (slot < refs.length ? listCosts(list, preferred) : FREE)),
+      costs.push(costs.length < refs.length ? listCosts(list, preferred) : FREE)
     }
+    this.slots = { refs, values, indices, costs }
   }
 
   nothing(): { members: Members; table: null } {
@@ -157,7 +172,7 @@ class Places {
 }
 
 /** Natural range of a ratio that picks spread over, with some room: only the first guess depends on it. */
-const GRAIN = 12
+const GRAIN = 30
 const NOTHING = toValueList([Infinity])
 const FREE = new Float64Array(1)
 
@@ -174,15 +189,15 @@ function untabled(upperSlot: number, lowerSlot: number): Members {
 
 function allowedValues(form: ValueForm, ref: string, values: readonly number[] | undefined): ValueList {
   if (!values) throw new RangeError(`No list of allowed values for ${ref}`)
-  if (form.kind !== 'gain-single' || ref !== 'Rg') return toValueList(values)
-  const { gainMinimum = -Infinity, gainMaximum = Infinity, stageGain = 1 } = form
-  if (gainMinimum === -Infinity && gainMaximum === Infinity) return toValueList(values)
-  return toValueList(
-    values.filter((value) => {
-      const gain = stageGain * (1 + form.k / value)
-      return gain >= gainMinimum && gain <= gainMaximum
-    }),
-  )
+  const list = toValueList(values)
+  if (form.kind !== 'gain-single' || ref !== 'Rg') return list
+  const { k, gainMinimum = -Infinity, gainMaximum = Infinity, stageGain = 1 } = form
+  const gainOf = (place: number): number => stageGain * (1 + k / (list.values[place] as number))
+  let from = 0
+  let to = list.values.length
+  while (from < to && !(gainOf(from) <= gainMaximum)) from++
+  while (to > from && !(gainOf(to - 1) >= gainMinimum)) to--
+  return partOf(list, from, to)
 }
 
 function concerns(limit: PairLimit, one: string | number, other: string | number): boolean {
@@ -191,6 +206,7 @@ function concerns(limit: PairLimit, one: string | number, other: string | number
 
 /** All demands on one pair together; null where there is none. */
 function boundsOf(limits: readonly PairLimit[], one: string | number, other: string | number): Bounds | null {
+  if (limits.length === 0) return null
   const from = limits.filter((limit) => concerns(limit, one, other))
   if (from.length === 0) return null
   return { ...merge(from), from }

@@ -118,12 +118,14 @@ export class Search {
           )
         : 0
     const end = high * largest * (1 + WIDER)
+    const fewest = (1 - WIDER) / high
+    const furthest = low > 0 ? (1 + WIDER) / low : Infinity
     let bottom = 0
     for (let i = start; i < uppers.length; i++) {
       const a = (uppers[i] as number) + above
       if (a > end) break
-      const least = quotient(a, high) * (1 - WIDER) - below * (1 + WIDER)
-      const most = low > 0 ? (a / low) * (1 + WIDER) : Infinity
+      const least = a === 0 ? 0 : a * fewest - below * (1 + WIDER)
+      const most = low > 0 ? a * furthest : Infinity
       while (bottom < lowers.length && (lowers[bottom] as number) < least) bottom++
       for (let j = bottom; j < lowers.length; j++) {
         const b = (lowers[j] as number) + below

@@ -172,8 +172,11 @@ export class ShortList {
       this.chosenDistinct = entry.distinct
       this.chosenCost = this.hasChosen ? entry.cost : Infinity
       for (const hit of entry.hits) this.choose(hit, entry.error)
-      Object.assign(entry, this.choice())
-      entry.hits.length = 0
+      entry.values = this.chosen
+      entry.sum = this.chosenSum
+      entry.distinct = this.chosenDistinct
+      entry.cost = this.chosenCost
+      entry.hits = []
     }
     this.entries.sort((a, b) => this.order(a, b))
     if (this.entries.length > this.count) this.entries.length = this.count
@@ -221,15 +224,18 @@ export class ShortList {
   private choose(hit: Hit, error: number): void {
     const { slots, first, second, trial, index } = this
     const share = error * this.share
-    const [a, b, c, d] = [first.upperSlot, first.lowerSlot, second.upperSlot, second.lowerSlot]
-    const [valuesA, valuesB, valuesC, valuesD] = [
-      slots.values[a],
-      slots.values[b],
-      slots.values[c],
-      slots.values[d],
-    ]
-    const [costsA, costsB, costsC, costsD] = [slots.costs[a], slots.costs[b], slots.costs[c], slots.costs[d]]
-    if (!valuesA || !valuesB || !valuesC || !valuesD || !costsA || !costsB || !costsC || !costsD) return
+    const a = first.upperSlot
+    const b = first.lowerSlot
+    const c = second.upperSlot
+    const d = second.lowerSlot
+    const valuesA = slots.values[a] as Float64Array
+    const valuesB = slots.values[b] as Float64Array
+    const valuesC = slots.values[c] as Float64Array
+    const valuesD = slots.values[d] as Float64Array
+    const costsA = slots.costs[a] as Float64Array
+    const costsB = slots.costs[b] as Float64Array
+    const costsC = slots.costs[c] as Float64Array
+    const costsD = slots.costs[d] as Float64Array
     const firstTo = hit.firstFrom < 0 ? hit.firstFrom + 1 : hit.firstTo
     const secondTo = hit.secondFrom < 0 ? hit.secondFrom + 1 : hit.secondTo
     for (let i = hit.firstFrom; i < firstTo; i++) {

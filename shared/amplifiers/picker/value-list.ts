@@ -10,6 +10,8 @@ export interface ValueList {
   /** Ω for which `costs` holds. */
   preferred: number
   costs: Float64Array
+  /** Lists made of a part of this one, by first and last place. */
+  parts: Map<number, ValueList>
 }
 
 const byArray = new WeakMap<readonly number[], ValueList>()
@@ -34,18 +36,36 @@ export function toValueList(allowed: readonly number[]): ValueList {
   const key = values.join()
   let list = byContent.get(key)
   if (!list) {
-    list = {
-      id: ++lastId,
-      values,
-      index: sortedIndex(values),
-      preferred: NaN,
-      costs: new Float64Array(values.length),
-    }
+    list = makeList(values)
     if (byContent.size >= KEPT) byContent.clear()
     byContent.set(key, list)
   }
   byArray.set(allowed, list)
   return list
+}
+
+/** The values from place `from` up to, but not including, place `to` of a list. */
+export function partOf(list: ValueList, from: number, to: number): ValueList {
+  if (from === 0 && to === list.values.length) return list
+  const key = from * 65536 + to
+  let part = list.parts.get(key)
+  if (!part) {
+    part = makeList(list.values.slice(from, to))
+    if (list.parts.size >= KEPT) list.parts.clear()
+    list.parts.set(key, part)
+  }
+  return part
+}
+
+function makeList(values: Float64Array): ValueList {
+  return {
+    id: ++lastId,
+    values,
+    index: sortedIndex(values),
+    preferred: NaN,
+    costs: new Float64Array(values.length),
+    parts: new Map(),
+  }
 }
 
 /** An array may have been changed since it was last seen. */

@@ -118,7 +118,7 @@ describe('other words of a row', () => {
     expect(Number.parseFloat(words.text)).toBeGreaterThanOrEqual(expected - 1e-12)
     const withTarget = errorWords(plan, { ...document, target: { limit: 0.01 } })
     expect(withTarget.target).toBeCloseTo(0.05, 12)
-    expect(spaces(withTarget.text)).toMatch(/ of 0\.050 m\/s$/)
+    expect(spaces(withTarget.text)).toMatch(/^\d\d of 50 mm\/s$/)
     expect(errorWords(null, { ...document, target: { limit: 0.5, per: 'quantity' } }).text).toMatch(/^target/)
     expect(errorWords(null, {}).text).toBe('not known')
   })

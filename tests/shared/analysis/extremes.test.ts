@@ -282,6 +282,14 @@ describe('clip points', () => {
     expect(outputs.reference!.low!.nominalClip).toEqual({ low: null, high: null, empty: false })
   })
 
+  it('depend on what else a case holds', () => {
+    const cases = [2.45, 2.55].map((vref) => ({ id: String(vref), pinned: { signal: 0, vref } }))
+    const { upper } = computeExtremes(network, { ...build(3.2), cases }).outputs
+    const [low, high] = [upper!['2.45']!.clip!.high!, upper!['2.55']!.clip!.high!]
+    // 0.1 V of reference moves the clip point by 0.1 V times R1/R2, and 1 % parts change that by up to 4 %
+    expectClose(low - high, 0.1 / 18, { relative: 0.04 })
+  })
+
   it('say that there is none where a margin is missed at every signal', () => {
     const entry = computeExtremes(network, build(3.2)).outputs.hopeless!.low!
     expect(entry.clip!.empty).toBe(true)

@@ -65,7 +65,7 @@ describe('answers of the first sheet', () => {
     const plan = { ...samplePlan, candidates: [{ ...sampleCandidate, levels: levels ?? [] }] }
     const [answer] = buildNote({ document: sampleDocument, plan, context: sampleContext }).first.answers
     expect(answer?.state).toBe('over')
-    expect(plain(answer?.figure)).toBe('−2.9 m/s to 2.16 m/s')
+    expect(plain(answer?.figure)).toBe('−2.90 m/s to 2.16 m/s')
   })
 
   it('says in words where one end is never met', () => {

@@ -8,7 +8,7 @@ const fine: Window = { series: 'E12', minimum: 1e3, maximum: 1e4 }
 const finest: Window = { series: 'E24', minimum: 1e3, maximum: 1e4 }
 
 /** Picks of two searches, each with its values spelled out. */
-function expectSamePicks(actual: Pick[], wanted: Pick[], refs: string[], context: string): void {
+function expectSamePicks(actual: Pick[], wanted: Pick[], refs: readonly string[], context: string): void {
   const spell = (pick: Pick): string => refs.map((ref) => `${ref}=${pick.values[ref] ?? 'open'}`).join(' ')
   expect(actual.map(spell), context).toEqual(wanted.map(spell))
   actual.forEach((pick, i) => {

@@ -58,7 +58,11 @@ function span(request: PickRequest): number {
 }
 
 /** Error of every combination in counting order, last ref fastest; NaN where it is not allowed. */
-function everyError(request: PickRequest, refs: string[], lists: (readonly number[])[]): Float64Array {
+function everyError(
+  request: PickRequest,
+  refs: readonly string[],
+  lists: (readonly number[])[],
+): Float64Array {
   const errors = new Float64Array(lists.reduce((product, list) => product * list.length, 1))
   const evaluate = closedForm(request.form)
   const { target, form } = request
@@ -85,7 +89,7 @@ function everyError(request: PickRequest, refs: string[], lists: (readonly numbe
 
 function pickOut(
   number: number,
-  refs: string[],
+  refs: readonly string[],
   lists: (readonly number[])[],
   x: Record<string, number>,
 ): void {
@@ -125,7 +129,7 @@ function distinctBound(errors: Float64Array, count: number, most: number): numbe
 
 function collect(
   request: PickRequest,
-  refs: string[],
+  refs: readonly string[],
   lists: (readonly number[])[],
   errors: Float64Array,
   bound: number,
@@ -147,7 +151,7 @@ function collect(
 /** The cheapest of each set with the same ends, cheapest first. */
 function classes(
   request: PickRequest,
-  refs: string[],
+  refs: readonly string[],
   entries: Entry[],
   share: number,
   weight: number,
@@ -161,8 +165,8 @@ function classes(
   const places = new Map<number, Pick[]>()
   for (const pick of picks) {
     const cell = Math.floor(pick.ends[0] / near / 4)
-    const near_ = [-1, 0, 1].flatMap((step) => places.get(cell + step) ?? [])
-    const same = near_.some(
+    const nearby = [-1, 0, 1].flatMap((step) => places.get(cell + step) ?? [])
+    const same = nearby.some(
       (other) =>
         Math.abs(other.ends[0] - pick.ends[0]) <= near && Math.abs(other.ends[1] - pick.ends[1]) <= near,
     )
@@ -173,7 +177,13 @@ function classes(
   return kept
 }
 
-function toPick(request: PickRequest, refs: string[], entry: Entry, share: number, practical: boolean): Pick {
+function toPick(
+  request: PickRequest,
+  refs: readonly string[],
+  entry: Entry,
+  share: number,
+  practical: boolean,
+): Pick {
   const values: Record<string, number> = {}
   entry.values.forEach((value, i) => {
     if (value !== Infinity) values[refs[i] as string] = value
@@ -227,7 +237,7 @@ function sensitivity(request: PickRequest, pick: Pick): number {
   )
 }
 
-function byCost(refs: string[]): (a: Pick, b: Pick) => number {
+function byCost(refs: readonly string[]): (a: Pick, b: Pick) => number {
   return (a, b) => {
     if (a.cost !== b.cost) return a.cost - b.cost
     for (const ref of refs) {

@@ -3,6 +3,7 @@ import { describe, expect, it } from 'vitest'
 import {
   formatEditable,
   formatNumber,
+  formatOf,
   formatQuantity,
   formatRange,
   formatRoom,
@@ -92,6 +93,18 @@ describe('writing a range', () => {
     expect(words(1.23456, 4.98765, 'outward')).toBe('1.234 to 4.988 V')
     expect(words(4.98765, 1.23456, 'inward')).toBe('4.987 to 1.235 V')
     expect(words(-1.23456, -0.98765, 'inward')).toBe('−1.234 to −0.988 V')
+  })
+})
+
+describe('writing a figure against the one it is held to', () => {
+  it.each<[number, number, string, string]>([
+    [0.01192, 0.015, 'm', '12 of 15 mm'],
+    [0.0094, 0.2, 'm', '0.0094 of 0.2 m'],
+    [0.0611, 0.1, '°C', '0.062 of 0.1 °C'],
+    [17.2, 20, 'NTU', '18 of 20 NTU'],
+    [Number.NaN, 20, 'NTU', 'not known'],
+  ])('writes %s of %s %s', (value, whole, unit, text) => {
+    expect(formatOf(value, whole, unit, { rounding: 'up' }).replaceAll('\u00a0', ' ')).toBe(text)
   })
 })
 

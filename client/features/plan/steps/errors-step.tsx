@@ -9,7 +9,7 @@ import {
   toToleranceTable,
   toVerdicts,
 } from '#shared/note/analysis-tables.ts'
-import { count, figure, signed } from '#shared/note/figures.ts'
+import { count, figure, reached, signed } from '#shared/note/figures.ts'
 import { toSlope } from '#shared/note/span.ts'
 import type { Table } from '#shared/note/types.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
@@ -117,11 +117,11 @@ function endPointTable(candidate: Candidate, design: Design, plan: Plan): Table 
         formatQuantity(design.sensor.quantity[end], unit),
         figure(realised.converter[end] - realised.endpointError[end], 'V'),
         figure(realised.converter[end], 'V'),
-        signed(realised.endpointError[end], 'V'),
-        `${signed(realised.endpointErrorLsb[end], '')} LSB`,
-        signed(realised.endpointErrorQuantity[end], unit),
+        signed(realised.endpointError[end], largest(realised.endpointError), 'V'),
+        `${signed(realised.endpointErrorLsb[end], largest(realised.endpointErrorLsb), '')} LSB`,
+        signed(realised.endpointErrorQuantity[end], largest(realised.endpointErrorQuantity), unit),
         count(realised.codes[end]),
-        `${figure(worst.low, 'V')} to ${figure(worst.high, 'V')}`,
+        reached(worst, 'V'),
       ],
     }
   }
@@ -144,9 +144,11 @@ function endPointTable(candidate: Candidate, design: Design, plan: Plan): Table 
   }
 }
 
+const largest = (ends: Ends): number => Math.max(Math.abs(ends.low), Math.abs(ends.high))
+
 /** Length of a line's bar: its size over that of the largest. */
 function shareOf(candidate: Candidate, row: number): number {
-  const size = (line: Ends | undefined) => (line ? Math.max(Math.abs(line.low), Math.abs(line.high)) : 0)
+  const size = (line: Ends | undefined) => (line ? largest(line) : 0)
   const sorted = [...(candidate.tolerance?.lines ?? [])].sort((a, b) => size(b) - size(a))
   // Only single lines have a bar: the sums below them would dwarf it.
   return row < Math.min(16, sorted.length) ? size(sorted[row]) / (size(sorted[0]) || 1) : 0

@@ -1,0 +1,139 @@
+import { buildConverter, buildDesign, buildDifferentialSensor, buildSensor } from './designs.ts'
+import { schemaLeaves, type Leaf } from './schema-leaves.ts'
+
+/*
+ * Documents of every shape that the schema allows: a sound design, with some of its keys set to other values that the
+ * schema accepts. Keys that only come together are filled up, so that few of the documents are refused.
+ */
+
+export type Json = { [key: string]: unknown }
+
+const resistors = { series: 'E12' } as const
+
+/** Sound designs, one for each way in which a sensor may be wired, few values to choose from. */
+export const soundDesigns: Record<'single-ended' | 'differential' | 'bridge', Json> = {
+  'single-ended': plain(buildDesign({ parts: { resistors } })),
+  differential: plain(
+    buildDesign({ sensor: buildDifferentialSensor(0.002, 0.03), parts: { resistors: { series: 'E6' } } }),
+  ),
+  bridge: plain(
+    buildDesign({
+      sensor: {
+        kind: 'bridge',
+        quantity: { name: 'Water level', unit: 'm', low: 0, high: 5 },
+        excitation: 5,
+        sensitivity: 0.002,
+        bandwidth: 5,
+      },
+      converter: buildConverter({ input: { low: 0, high: 4.096 }, reference: { voltage: 4.096 } }),
+      parts: { resistors: { series: 'E6' } },
+    }),
+  ),
+}
+
+function plain(document: unknown): Json {
+  return JSON.parse(JSON.stringify(document)) as Json
+}
+
+/** Leaves that a sound design can take: those of its own sensor kind. */
+export function leavesOf(document: Json): Leaf[] {
+  const { kind } = document.sensor as Json
+  return schemaLeaves().filter((leaf) => leaf.kind === null || leaf.kind === kind)
+}
+
+/** A copy with one leaf set, and with what that leaf cannot be without. */
+export function withLeaf(document: Json, leaf: Leaf, value: unknown): Json {
+  const copy = structuredClone(document)
+  const top = leaf.path.join('.')
+  const found = companions.find(([prefix]) => top === prefix || top.startsWith(`${prefix}.`))
+  if (found) setAt(copy, found[0].split('.'), found[1](copy))
+  setAt(copy, leaf.path, value)
+  return copy
+}
+
+/** Value at a path; undefined where there is none. */
+export function valueAt(document: unknown, path: readonly (string | number)[]): unknown {
+  return path.reduce<unknown>(
+    (at, key) => (typeof at === 'object' && at !== null ? (at as Json)[key] : undefined),
+    document,
+  )
+}
+
+function setAt(document: Json, path: readonly (string | number)[], value: unknown): void {
+  let at = document as Json
+  path.forEach((key, i) => {
+    if (i === path.length - 1) return void (at[key] = value)
+    if (typeof at[key] !== 'object' || at[key] === null) at[key] = typeof path[i + 1] === 'number' ? [] : {}
+    at = at[key] as Json
+  })
+}
+
+type Range = { low: number; high: number }
+
+const rangeOf = (document: Json, path: string): Range => {
+  const { low, high } = valueAt(document, path.split('.')) as Range
+  return { low, high }
+}
+
+const around = ({ low, high }: Range): Range => ({
+  low: low - 0.05 * (high - low),
+  high: high + 0.05 * (high - low),
+})
+
+const kept = (document: Json, path: string, fresh: Json): Json => ({
+  ...fresh,
+  ...(valueAt(document, path.split('.')) as Json | undefined),
+})
+
+/** [branch that comes whole, what it holds where it is new] */
+const companions: [string, (document: Json) => unknown][] = [
+  ['sensor.temperature', () => ({ low: -10, high: 40 })],
+  ['sensor.fault', () => ({ low: -30, high: 30 })],
+  [
+    'sensor.beyond',
+    (d) => around(rangeOf(d, (d.sensor as Json).kind === 'bridge' ? 'sensor.quantity' : 'sensor.output')),
+  ],
+  [
+    'sensor.excitation',
+    (d) =>
+      typeof (d.sensor as Json).excitation === 'object' ? (d.sensor as Json).excitation : { voltage: 5 },
+  ],
+  ['converter.guard', () => ({ low: 0.02, high: 0.02 })],
+  ['converter.commonMode', () => ({ low: 0, high: 2.5 })],
+  ['converter.absolute', () => ({ low: -0.3, high: 3.6 })],
+  ['shiftReference', (d) => kept(d, 'shiftReference', { voltage: 2 })],
+  ['target', (d) => kept(d, 'target', { limit: 0.01 })],
+  ['choose.filter', (d) => kept(d, 'choose.filter', { kind: 'rc' })],
+  ['choose.stages', () => [{ ref: 'S1' }]],
+  ['parts.instrumentation.cmrr', () => [[1, 80]]],
+  ['parts.instrumentation.psrr', () => [[1, 80]]],
+  ['parts.instrumentation.bandwidth', () => [[1, 1e6]]],
+]
+
+/** Values that a leaf accepts, from `pick` in [0, 1) twice: both bounds and figures over many decades. */
+export function valueFor(leaf: Leaf, pick: () => number): unknown {
+  const { rule } = leaf
+  if (rule.type === 'choice') return rule.values[Math.floor(pick() * rule.values.length)]
+  if (rule.type === 'text')
+    return 'Grüße µΩ 測量'.slice(0, Math.max(rule.least, 1 + Math.floor(pick() * Math.min(rule.most, 12))))
+  if (rule.type === 'free') return { by: ['anyone', null, 1.5, { deep: true }] }
+  const { least, most, above, below, integer } = rule
+  const inside = (x: number) => (above ? x > least : x >= least) && (below ? x < most : x <= most)
+  for (let tries = 0; tries < 40; tries++) {
+    const chance = pick()
+    const size = 10 ** (-12 + 18 * pick())
+    const raw =
+      chance < 0.08
+        ? least
+        : chance < 0.16
+          ? most
+          : chance < 0.75
+            ? size
+            : chance < 0.9
+              ? -size
+              : Math.round(pick() * 10)
+    const value = integer ? Math.round(raw) : Number(raw.toPrecision(6))
+    if (inside(value)) return value
+  }
+  return least + (most - least) / 2
+}
