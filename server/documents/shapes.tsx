@@ -18,6 +18,7 @@ import { linePaint, textPaint, type Hatch } from '#shared/drawings/styles.ts'
 import { textBox } from '#shared/drawings/text-width.ts'
 import { TEXT } from './fonts.ts'
 import { toPrintable } from './glyphs.ts'
+import { boxOf, clipToPolygon, readPolygon } from './polygon.ts'
 import { paints, textColours, type Paint } from './shape-colours.ts'
 import { colours } from './theme.ts'
 
@@ -42,20 +43,18 @@ export function Drawing({ shapes, box, width }: DrawingProps): ReactNode {
       viewBox={`${round(box.x)} ${round(box.y)} ${round(box.width)} ${round(box.height)}`}
     >
       {shapes.map((shape, index) => (
-        <Painted key={index} id={`clip${index}`} shape={shape} scale={scale} box={box} />
+        <Painted key={index} shape={shape} scale={scale} />
       ))}
     </Svg>
   )
 }
 
 interface PaintedProps {
-  id: string
   shape: Shape
   scale: number
-  box: Box
 }
 
-function Painted({ id, shape, scale, box }: PaintedProps): ReactNode {
+function Painted({ shape, scale }: PaintedProps): ReactNode {
   if (shape.type === 'text') return <Lettering shape={shape} scale={scale} />
   const paint = linePaint(shape.style)
   const colour = paints[shape.style]
@@ -66,9 +65,7 @@ function Painted({ id, shape, scale, box }: PaintedProps): ReactNode {
     ...(paint.opacity === undefined ? {} : { opacity: paint.opacity }),
     strokeLinejoin: 'round' as const,
   }
-  const hatch = paint.hatch ? (
-    <Hatching id={id} shape={shape} hatch={paint.hatch} colour={colour} box={box} />
-  ) : null
+  const hatch = paint.hatch ? <Hatching shape={shape} hatch={paint.hatch} colour={colour} /> : null
   switch (shape.type) {
     case 'line':
       return (
@@ -117,23 +114,17 @@ const hatchings: Record<Hatch, { spacing: number; angles: number[]; width: numbe
 }
 
 interface HatchingProps {
-  id: string
   shape: Exclude<Shape, TextShape>
   hatch: Hatch
   colour: Paint
-  box: Box
 }
 
-/** Hatching as lines, since PDF drawings of this library have no patterns; cut by the shape itself if it is a path. */
-function Hatching({ id, shape, hatch, colour, box }: HatchingProps): ReactNode {
+/** Hatching as lines, since drawings of this library have no patterns; all in one path, as an element each is slow. */
+function Hatching({ shape, hatch, colour }: HatchingProps): ReactNode {
   const { spacing, angles, width, opacity } = hatchings[hatch]
-  const area: Box | null =
-    shape.type === 'rect' ? shape : shape.type === 'path' ? (boxOfPath(shape.d) ?? box) : null
-  if (!area) return null
-  // One path for all lines: an element a line would be slow.
-  const d = angles.flatMap((angle) => hatchLines(area, spacing, angle).map(toSegment)).join('')
+  const d = angles.flatMap((angle) => hatched(shape, spacing, angle).map(toSegment)).join('')
   if (d === '') return null
-  const lines = (
+  return (
     <Path
       d={d}
       fill="none"
@@ -142,38 +133,17 @@ function Hatching({ id, shape, hatch, colour, box }: HatchingProps): ReactNode {
       strokeOpacity={opacity}
     />
   )
-  if (shape.type !== 'path') return lines
-  return (
-    <G>
-      <Defs>
-        <ClipPath id={id}>
-          <Path d={shape.d} />
-        </ClipPath>
-      </Defs>
-      <G clipPath={`url(#${id})`}>{lines}</G>
-    </G>
-  )
+}
+
+function hatched(shape: Exclude<Shape, TextShape>, spacing: number, angle: number): LineShape[] {
+  if (shape.type === 'rect') return hatchLines(shape, spacing, angle)
+  const points = shape.type === 'path' ? readPolygon(shape.d) : null
+  if (!points) return []
+  return hatchLines(boxOf(points), spacing, angle).flatMap((line) => clipToPolygon(line, points))
 }
 
 const toSegment = ({ x1, y1, x2, y2 }: LineShape): string =>
   `M${round(x1)} ${round(y1)}L${round(x2)} ${round(y2)}`
-
-/** Box of a path of absolute M, L, H, V and Z commands; null for any other, which then hatches the whole drawing. */
-function boxOfPath(d: string): Box | null {
-  if (/[^MLHVZ\d\s.,e+-]/.test(d)) return null
-  const xs: number[] = []
-  const ys: number[] = []
-  for (const [, command = '', body = ''] of d.matchAll(/([MLHV])([^MLHVZ]*)/g)) {
-    const numbers = (body.match(/-?\d*\.?\d+(?:e[-+]?\d+)?/g) ?? []).map(Number)
-    numbers.forEach((value, index) => {
-      if (command === 'H' || (command !== 'V' && index % 2 === 0)) xs.push(value)
-      else ys.push(value)
-    })
-  }
-  if (xs.length === 0 || ys.length === 0) return null
-  const [x, y] = [Math.min(...xs), Math.min(...ys)]
-  return { x, y, width: Math.max(...xs) - x, height: Math.max(...ys) - y }
-}
 
 /** Nearest weight that the note's family is registered in. */
 const toWeight = (weight: number): 400 | 500 | 600 => (weight < 450 ? 400 : weight < 575 ? 500 : 600)

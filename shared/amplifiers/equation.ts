@@ -24,3 +24,17 @@ export function gainAndOffset(
 }
 
 export const noOffset = { symbolic: '0', numeric: '0', value: 0 }
+
+/** One leg of a network as it stands in an equation: a resistor, with the resistance before it written out. */
+export interface Leg {
+  symbolic: string
+  numeric: string
+  value: number
+}
+
+/** `before` Ω (source or reference) in series with a resistor; 0 leaves the resistor alone. */
+export function leg(ref: string, value: number | undefined, before: number, name: 'Rsource' | 'Rref'): Leg {
+  const own = value ?? 0
+  if (before === 0) return { symbolic: ref, numeric: ohms(own), value: own }
+  return { symbolic: `(${ref} + ${name})`, numeric: `(${ohms(own)} + ${ohms(before)})`, value: own + before }
+}

@@ -1,20 +1,9 @@
-import type { Level } from '#shared/design/plan.ts'
-import { formatQuantity, formatRoom } from '#shared/units/format-quantity.ts'
+import { formatRoom } from '#shared/units/format-quantity.ts'
 import { verticalDimension } from './dimension.ts'
 import { levelLabels, limitLabels, OVERHANG, type BayPlace } from './level-labels.ts'
-import {
-  bothEnds,
-  clipText,
-  isKnown,
-  reachOf,
-  rises,
-  roomOf,
-  sideState,
-  type FigureOptions,
-  type LimitSide,
-} from './level-figures.ts'
-import { held, type BayScale, type LevelMeasures } from './level-scale.ts'
-import { line, overlaps, path, polyline, rect, text, type Box, type Shape, type TextShape } from './shapes.ts'
+import { isKnown, reachOf, roomOf, sideState, type FigureOptions, type LimitSide } from './level-figures.ts'
+import { held, type LevelMeasures } from './level-scale.ts'
+import { line, overlaps, path, polyline, rect, text, type Shape, type TextShape } from './shapes.ts'
 import { textBox } from './text-width.ts'
 
 /** From this gap on the dimension line stands inside it. */

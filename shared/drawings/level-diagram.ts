@@ -103,7 +103,7 @@ function caption(levels: readonly Level[], options: LevelOptions, times: number)
 function unitsOf(levels: readonly Level[]): string {
   const unit = (level: Level | undefined) =>
     level && isKnown(level)
-      ? (bothEnds(level.region.low, level.region.high, level.unit).high.split(' ')[1] ?? level.unit)
+      ? (bothEnds(level.region.low, level.region.high, level.unit).high.split(/\s/)[1] ?? level.unit)
       : null
   const [first, ...rest] = levels.map(unit)
   const other = rest.find((u) => u !== null)

@@ -35,10 +35,11 @@ export function limitLabels(
 ): TextShape[] {
   if (!isKnown(level)) return []
   const figures = bothEnds(level.region.low, level.region.high, level.unit, options.decimalSign)
-  const bare = (figure: string) => (measures.limitUnits ? figure : (figure.split(' ')[0] ?? figure))
+  const bare = (figure: string) => (measures.limitUnits ? figure : (figure.split(/\s/)[0] ?? figure))
   const label = (y: number, content: string) =>
     text('limit-value', x - OVERHANG - 4, y + 4, content, 'end', { on: 'sheet', scale: measures.text })
-  return [label(scale.upper, bare(figures.high)), label(scale.lower, bare(figures.low))]
+  const spare = Math.max(0, 12 * measures.text - (scale.lower - scale.upper)) / 2
+  return [label(scale.upper - spare, bare(figures.high)), label(scale.lower + spare, bare(figures.low))]
 }
 
 /** Level figures at the right; the measurand's ends at the first bay; the clip point under a figure that is over. */
@@ -47,7 +48,7 @@ export function levelLabels(
   { bay, text: size }: LevelMeasures,
   options: FigureOptions,
   over: Record<LimitSide, boolean>,
-): Shape[] {
+): TextShape[] {
   const nominal = reachOf(level, false)
   const figures = bothEnds(nominal.low, nominal.high, level.unit, options.decimalSign)
   const { quantity } = options

@@ -5,7 +5,7 @@ import { drawRow, snap, type Way } from './row.ts'
 import { LEAD, LENGTH, type Sheet, type Spot } from './sheet.ts'
 import { AMPLIFIER, INSTRUMENTATION, instrumentationSymbol } from './symbols.ts'
 
-const { width: WIDTH, half: HALF, pin: PIN } = AMPLIFIER
+const { half: HALF, pin: PIN } = AMPLIFIER
 /** From the column of the − input to the back of the triangle, and from its tip to the column of the output. */
 const BACK = 24
 const TIP = 16

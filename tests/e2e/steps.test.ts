@@ -57,6 +57,7 @@ describe('the steps of a plan', () => {
   it('lead on and back by links named after their target, and by Ctrl+Enter', async () => {
     const { page, close } = await app.open()
     await page.goto('/plan/measurand')
+    await page.getByRole('heading', { name: 'Measurand', level: 1 }).waitFor()
     for (const [step, title] of steps.slice(1)) {
       await page.keyboard.press('Control+Enter')
       await page.waitForURL(`**/plan/${step}`)

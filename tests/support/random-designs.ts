@@ -31,14 +31,85 @@ export const soundDesigns: Record<'single-ended' | 'differential' | 'bridge', Js
   ),
 }
 
+/**
+ * Designs with every optional branch in place, so that one key can be changed without another. Rail, references and
+ * excitation have one voltage, so that each may be declared the same as another.
+ */
+export const fullDesigns: Record<string, Json> = {
+  'single-ended': full({
+    ...sensorOf('single-ended'),
+    fault: { low: -30, high: 30 },
+    beyond: { low: -0.4, high: 0.4 },
+  }),
+  differential: full({
+    ...sensorOf('differential'),
+    fault: { low: -30, high: 30 },
+    beyond: { low: 0.001, high: 0.031 },
+  }),
+  bridge: full({
+    ...sensorOf('bridge'),
+    excitation: { voltage: 5 },
+    ratedAt: 5,
+    beyond: { low: -0.5, high: 5.5 },
+  }),
+}
+
+function sensorOf(name: keyof typeof soundDesigns): Json {
+  return soundDesigns[name].sensor as Json
+}
+
+function full(sensor: Json): Json {
+  return {
+    ...soundDesigns['single-ended'],
+    sensor: { ...sensor, bandLow: 0.1, temperature: { low: -10, high: 40 } },
+    converter: {
+      input: { low: 0, high: 5 },
+      guard: { low: 0.02, high: 0.02 },
+      bits: 14,
+      reference: { voltage: 5 },
+      sampleRate: 1000,
+      acquisitionTime: 1e-6,
+      commonMode: { low: 0, high: 2.5 },
+      absolute: { low: -0.3, high: 5.3 },
+      supply: 5,
+    },
+    rails: { positive: 5 },
+    shiftReference: { voltage: 5 },
+    parts: {
+      resistors: { series: 'E12', tracking: 1e-6, ratioTolerance: 1e-4, stock: [1000] },
+      capacitors: { stock: [1e-9] },
+      amplifier: { vosCommonMode: 2.5, typical: { word: 1 } },
+      instrumentation: { cmrr: [[1, 80]], psrr: [[1, 80]], bandwidth: [[1, 1e6]] },
+    },
+    target: { limit: 0.01 },
+    rules: { aliasAttenuation: 60 },
+    calibration: { points: [0] },
+    choose: {
+      arrangement: 'follower',
+      pick: 1,
+      values: { R1: 1000 },
+      stages: [{ ref: 'S1', arrangement: 'follower', gain: 2, reference: 1 }],
+      filter: { kind: 'rc', corner: 100 },
+      drive: { resistance: 100, capacitance: 1e-9 },
+    },
+    notes: { word: 'first' },
+  }
+}
+
 function plain(document: unknown): Json {
   return JSON.parse(JSON.stringify(document)) as Json
 }
 
 /** Leaves that a sound design can take: those of its own sensor kind. */
 export function leavesOf(document: Json): Leaf[] {
-  const { kind } = document.sensor as Json
-  return schemaLeaves().filter((leaf) => leaf.kind === null || leaf.kind === kind)
+  const { kind, wiring, excitation } = document.sensor as Json
+  return schemaLeaves().filter(({ kind: own, path }) => {
+    if (own !== null && own !== kind) return false
+    const at = path.join('.')
+    // A common mode needs two wires; a branch leaves no room for the plain number in its place.
+    if (at.startsWith('sensor.commonMode')) return wiring === 'differential'
+    return !(at === 'sensor.excitation' && typeof excitation === 'object')
+  })
 }
 
 /** A copy with one leaf set, and with what that leaf cannot be without. */

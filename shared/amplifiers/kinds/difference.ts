@@ -1,4 +1,4 @@
-import { ohms } from '../equation.ts'
+import { leg, ohms } from '../equation.ts'
 import { signalEnds } from '../needs.ts'
 import { withLevels } from './differential.ts'
 
@@ -39,8 +39,8 @@ export const difference = withLevels({
     stage.amplifier(plus, minus, stage.nodes.out)
   },
   gain(values, need) {
-    const r1 = (values.R1 ?? 0) + need.sourceResistance
+    const r1 = leg('R1', values.R1, need.sourceResistance, 'Rsource')
     const r2 = values.R2 ?? 0
-    return { symbolic: 'R2/R1', numeric: `${ohms(r2)}/${ohms(r1)}`, value: r2 / r1 }
+    return { symbolic: `R2/${r1.symbolic}`, numeric: `${ohms(r2)}/${r1.numeric}`, value: r2 / r1.value }
   },
 })

@@ -1,5 +1,5 @@
 import type { Equation, Reason } from '#shared/design/plan.ts'
-import { gainAndOffset, ohms, voltsText } from '../equation.ts'
+import { gainAndOffset, leg, ohms, voltsText } from '../equation.ts'
 import {
   intercept,
   refuse,
@@ -190,11 +190,11 @@ function equations(
   if (feed.kind === 'ground') return gainAndOffset(gain, { symbolic: '0', numeric: '0', value: 0 })
   if (feed.kind === 'reference')
     return gainAndOffset(gain, { symbolic: 'Vref', numeric: voltsText(v), value: v })
-  const r7 = (values.R7 ?? 0) + (need.reference?.resistance ?? 0)
+  const r7 = leg('R7', values.R7, need.reference?.resistance ?? 0, 'Rref')
   const r8 = values.R8 ?? 0
   return gainAndOffset(gain, {
-    symbolic: 'Vref × R8/(R7 + R8)',
-    numeric: `${voltsText(v)} × ${ohms(r8)}/(${ohms(r7)} + ${ohms(r8)})`,
-    value: (v * r8) / (r7 + r8),
+    symbolic: `Vref × R8/(${r7.symbolic} + R8)`,
+    numeric: `${voltsText(v)} × ${ohms(r8)}/(${r7.numeric} + ${ohms(r8)})`,
+    value: (v * r8) / (r7.value + r8),
   })
 }

@@ -1,4 +1,4 @@
-import { gainAndOffset, noOffset, ohms, voltsText } from '../equation.ts'
+import { gainAndOffset, leg, noOffset, ohms, voltsText, type Leg } from '../equation.ts'
 import { intercept, refuse, slope, type Arrangement } from '../define.ts'
 import { oriented, placeWithOffset } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
@@ -37,11 +37,8 @@ export const inverting: Arrangement = {
     stage.amplifier('0', sum, stage.nodes.out)
   },
   equations(values, _sizing, need) {
-    const rg = (values.Rg ?? 0) + need.sourceResistance
-    return gainAndOffset(
-      { symbolic: '−Rf/Rg', numeric: `−${ohms(values.Rf)}/${ohms(rg)}`, value: -(values.Rf ?? 0) / rg },
-      noOffset,
-    )
+    const rg = leg('Rg', values.Rg, need.sourceResistance, 'Rsource')
+    return gainAndOffset(inputGain(values.Rf ?? 0, rg), noOffset)
   },
 }
 
@@ -106,18 +103,15 @@ export const invertingUp: Arrangement = {
   },
   equations(values, _sizing, need) {
     const v = need.reference?.voltage ?? 0
-    const r1 = (values.R1 ?? 0) + (need.reference?.resistance ?? 0)
+    const r1 = leg('R1', values.R1, need.reference?.resistance ?? 0, 'Rref')
     const r2 = values.R2 ?? 0
-    const rg = (values.Rg ?? 0) + need.sourceResistance
-    const ratio = (values.Rf ?? 0) / rg
-    return gainAndOffset(
-      { symbolic: '−Rf/Rg', numeric: `−${ohms(values.Rf)}/${ohms(rg)}`, value: -ratio },
-      {
-        symbolic: 'Vref × R2/(R1 + R2) × (1 + Rf/Rg)',
-        numeric: `${voltsText(v)} × ${ohms(r2)}/(${ohms(r1)} + ${ohms(r2)}) × (1 + ${ohms(values.Rf)}/${ohms(rg)})`,
-        value: ((v * r2) / (r1 + r2)) * (1 + ratio),
-      },
-    )
+    const rg = leg('Rg', values.Rg, need.sourceResistance, 'Rsource')
+    const rf = values.Rf ?? 0
+    return gainAndOffset(inputGain(rf, rg), {
+      symbolic: `Vref × R2/(${r1.symbolic} + R2) × (1 + Rf/${rg.symbolic})`,
+      numeric: `${voltsText(v)} × ${ohms(r2)}/(${r1.numeric} + ${ohms(r2)}) × (1 + ${ohms(rf)}/${rg.numeric})`,
+      value: ((v * r2) / (r1.value + r2)) * (1 + rf / rg.value),
+    })
   },
 }
 
@@ -167,16 +161,18 @@ export const invertingDown: Arrangement = {
   },
   equations(values, _sizing, need) {
     const v = need.reference?.voltage ?? 0
-    const rs = (values.Rs ?? 0) + (need.reference?.resistance ?? 0)
-    const rg = (values.Rg ?? 0) + need.sourceResistance
+    const rs = leg('Rs', values.Rs, need.reference?.resistance ?? 0, 'Rref')
+    const rg = leg('Rg', values.Rg, need.sourceResistance, 'Rsource')
     const rf = values.Rf ?? 0
-    return gainAndOffset(
-      { symbolic: '−Rf/Rg', numeric: `−${ohms(rf)}/${ohms(rg)}`, value: -rf / rg },
-      {
-        symbolic: '−Vref × Rf/Rs',
-        numeric: `−${voltsText(v)} × ${ohms(rf)}/${ohms(rs)}`,
-        value: (-v * rf) / rs,
-      },
-    )
+    return gainAndOffset(inputGain(rf, rg), {
+      symbolic: `−Vref × Rf/${rs.symbolic}`,
+      numeric: `−${voltsText(v)} × ${ohms(rf)}/${rs.numeric}`,
+      value: (-v * rf) / rs.value,
+    })
   },
+}
+
+/** −Rf over the leg from the signal. */
+function inputGain(rf: number, rg: Leg): Leg {
+  return { symbolic: `−Rf/${rg.symbolic}`, numeric: `−${ohms(rf)}/${rg.numeric}`, value: -rf / rg.value }
 }

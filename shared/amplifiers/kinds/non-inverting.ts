@@ -1,4 +1,4 @@
-import { gainAndOffset, noOffset, ohms, voltsText } from '../equation.ts'
+import { gainAndOffset, leg, noOffset, ohms, voltsText } from '../equation.ts'
 import { intercept, refuse, slope, type Arrangement } from '../define.ts'
 import { oriented, placeWithOffset } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
@@ -110,21 +110,24 @@ export const nonInvertingUp: Arrangement = {
     stage.resistor('Rg', tap, '0', values.Rg)
   },
   equations(values, _sizing, need) {
-    const r1 = (values.R1 ?? 0) + need.sourceResistance
-    const r2 = (values.R2 ?? 0) + (need.reference?.resistance ?? 0)
-    const noise = values.Rg === undefined ? 1 : 1 + (values.Rf ?? 0) / values.Rg
-    const after = values.Rg === undefined ? '1' : `(1 + ${ohms(values.Rf)}/${ohms(values.Rg)})`
+    const r1 = leg('R1', values.R1, need.sourceResistance, 'Rsource')
+    const r2 = leg('R2', values.R2, need.reference?.resistance ?? 0, 'Rref')
+    const unity = values.Rg === undefined || values.Rf === 0
+    const noise = unity ? 1 : 1 + (values.Rf ?? 0) / (values.Rg ?? 1)
+    const symbol = unity ? '' : ' × (1 + Rf/Rg)'
+    const after = unity ? '' : ` × (1 + ${ohms(values.Rf)}/${ohms(values.Rg)})`
     const v = need.reference?.voltage ?? 0
+    const sum = r1.value + r2.value
     return gainAndOffset(
       {
-        symbolic: 'R2/(R1 + R2) × (1 + Rf/Rg)',
-        numeric: `${ohms(r2)}/(${ohms(r1)} + ${ohms(r2)}) × ${after}`,
-        value: (r2 / (r1 + r2)) * noise,
+        symbolic: `${r2.symbolic}/(${r1.symbolic} + ${r2.symbolic})${symbol}`,
+        numeric: `${r2.numeric}/(${r1.numeric} + ${r2.numeric})${after}`,
+        value: (r2.value / sum) * noise,
       },
       {
-        symbolic: 'Vref × R1/(R1 + R2) × (1 + Rf/Rg)',
-        numeric: `${voltsText(v)} × ${ohms(r1)}/(${ohms(r1)} + ${ohms(r2)}) × ${after}`,
-        value: ((v * r1) / (r1 + r2)) * noise,
+        symbolic: `Vref × ${r1.symbolic}/(${r1.symbolic} + ${r2.symbolic})${symbol}`,
+        numeric: `${voltsText(v)} × ${r1.numeric}/(${r1.numeric} + ${r2.numeric})${after}`,
+        value: ((v * r1.value) / sum) * noise,
       },
     )
   },
@@ -196,21 +199,21 @@ export const nonInvertingDown: Arrangement = {
   },
   equations(values, _sizing, need) {
     const v = need.reference?.voltage ?? 0
-    const r1 = (values.R1 ?? 0) + (need.reference?.resistance ?? 0)
+    const r1 = leg('R1', values.R1, need.reference?.resistance ?? 0, 'Rref')
     const r2 = values.R2 ?? 0
-    const thevenin = (r1 * r2) / (r1 + r2)
-    const leg = (values.Rg ?? 0) + thevenin
-    const ratio = (values.Rf ?? 0) / leg
+    const thevenin = (r1.value * r2) / (r1.value + r2)
+    const total = (values.Rg ?? 0) + thevenin
+    const ratio = (values.Rf ?? 0) / total
     return gainAndOffset(
       {
-        symbolic: '1 + Rf/(Rg + R1 || R2)',
+        symbolic: `1 + Rf/(Rg + ${r1.symbolic} || R2)`,
         numeric: `1 + ${ohms(values.Rf)}/(${ohms(values.Rg)} + ${ohms(thevenin)})`,
         value: 1 + ratio,
       },
       {
-        symbolic: '−Vref × R2/(R1 + R2) × Rf/(Rg + R1 || R2)',
-        numeric: `−${voltsText(v)} × ${ohms(r2)}/(${ohms(r1)} + ${ohms(r2)}) × ${ohms(values.Rf)}/${ohms(leg)}`,
-        value: ((-v * r2) / (r1 + r2)) * ratio,
+        symbolic: `−Vref × R2/(${r1.symbolic} + R2) × Rf/(Rg + ${r1.symbolic} || R2)`,
+        numeric: `−${voltsText(v)} × ${ohms(r2)}/(${r1.numeric} + ${ohms(r2)}) × ${ohms(values.Rf)}/${ohms(total)}`,
+        value: ((-v * r2) / (r1.value + r2)) * ratio,
       },
     )
   },

@@ -1,4 +1,4 @@
-import { gainAndOffset, noOffset, ohms, voltsText } from '../equation.ts'
+import { gainAndOffset, leg, noOffset, ohms, voltsText } from '../equation.ts'
 import { intercept, refuse, slope, type Arrangement, type Need } from '../define.ts'
 import { oriented, placeWithOffset } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
@@ -88,10 +88,14 @@ export const attenuator: Arrangement = {
     stage.amplifier(tap, stage.nodes.out, stage.nodes.out)
   },
   equations(values, _sizing, need) {
-    const r1 = (values.R1 ?? 0) + need.sourceResistance
+    const r1 = leg('R1', values.R1, need.sourceResistance, 'Rsource')
     const r2 = values.R2 ?? 0
     return gainAndOffset(
-      { symbolic: 'R2/(R1 + R2)', numeric: `${ohms(r2)}/(${ohms(r1)} + ${ohms(r2)})`, value: r2 / (r1 + r2) },
+      {
+        symbolic: `R2/(${r1.symbolic} + R2)`,
+        numeric: `${ohms(r2)}/(${r1.numeric} + ${ohms(r2)})`,
+        value: r2 / (r1.value + r2),
+      },
       noOffset,
     )
   },
@@ -150,23 +154,24 @@ export const levelShift: Arrangement = {
     stage.amplifier(mix, stage.nodes.out, stage.nodes.out)
   },
   equations(values, _sizing, need) {
-    const r1 = (values.R1 ?? 0) + need.sourceResistance
-    const r2 = (values.R2 ?? 0) + (need.reference?.resistance ?? 0)
+    const r1 = leg('R1', values.R1, need.sourceResistance, 'Rsource')
+    const r2 = leg('R2', values.R2, need.reference?.resistance ?? 0, 'Rref')
     const r3 = values.R3
-    const parallel = (a: number, b: number | undefined) => (b === undefined ? a : (a * b) / (a + b))
+    const parallel = (r: number) => (r3 === undefined ? r : (r * r3) / (r + r3))
+    const beside = (r: string) => (r3 === undefined ? r : `${r} || R3`)
     const v = need.reference?.voltage ?? 0
-    const lower = parallel(r2, r3)
-    const other = parallel(r1, r3)
+    const lower = parallel(r2.value)
+    const other = parallel(r1.value)
     return gainAndOffset(
       {
-        symbolic: '(R2 || R3)/(R1 + R2 || R3)',
-        numeric: `${ohms(lower)}/(${ohms(r1)} + ${ohms(lower)})`,
-        value: lower / (r1 + lower),
+        symbolic: `(${beside(r2.symbolic)})/(${r1.symbolic} + ${beside(r2.symbolic)})`,
+        numeric: `${ohms(lower)}/(${r1.numeric} + ${ohms(lower)})`,
+        value: lower / (r1.value + lower),
       },
       {
-        symbolic: 'Vref·(R1 || R3)/(R2 + R1 || R3)',
-        numeric: `${voltsText(v)} × ${ohms(other)}/(${ohms(r2)} + ${ohms(other)})`,
-        value: (v * other) / (r2 + other),
+        symbolic: `Vref × (${beside(r1.symbolic)})/(${r2.symbolic} + ${beside(r1.symbolic)})`,
+        numeric: `${voltsText(v)} × ${ohms(other)}/(${r2.numeric} + ${ohms(other)})`,
+        value: (v * other) / (r2.value + other),
       },
     )
   },

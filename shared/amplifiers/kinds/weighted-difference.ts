@@ -1,4 +1,4 @@
-import { gainAndOffset, ohms, voltsText } from '../equation.ts'
+import { gainAndOffset, leg, ohms, voltsText } from '../equation.ts'
 import { intercept, refuse, slope, type Arrangement } from '../define.ts'
 import { oriented } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
@@ -64,20 +64,20 @@ export const weightedDifference: Arrangement = {
   },
   equations(values, _sizing, need) {
     const v = need.reference?.voltage ?? 0
-    const r1 = (values.R1 ?? 0) + (need.reference?.resistance ?? 0)
+    const r1 = leg('R1', values.R1, need.reference?.resistance ?? 0, 'Rref')
     const r2 = values.R2 ?? 0
-    const r3 = (values.R3 ?? 0) + need.sourceResistance
+    const r3 = leg('R3', values.R3, need.sourceResistance, 'Rsource')
     const r4 = values.R4 ?? 0
     return gainAndOffset(
       {
-        symbolic: 'R4/(R3 + R4) × (1 + R2/R1)',
-        numeric: `${ohms(r4)}/(${ohms(r3)} + ${ohms(r4)}) × (1 + ${ohms(r2)}/${ohms(r1)})`,
-        value: (r4 / (r3 + r4)) * (1 + r2 / r1),
+        symbolic: `R4/(${r3.symbolic} + R4) × (1 + R2/${r1.symbolic})`,
+        numeric: `${ohms(r4)}/(${r3.numeric} + ${ohms(r4)}) × (1 + ${ohms(r2)}/${r1.numeric})`,
+        value: (r4 / (r3.value + r4)) * (1 + r2 / r1.value),
       },
       {
-        symbolic: '−Vref × R2/R1',
-        numeric: `−${voltsText(v)} × ${ohms(r2)}/${ohms(r1)}`,
-        value: (-v * r2) / r1,
+        symbolic: `−Vref × R2/${r1.symbolic}`,
+        numeric: `−${voltsText(v)} × ${ohms(r2)}/${r1.numeric}`,
+        value: (-v * r2) / r1.value,
       },
     )
   },

@@ -71,7 +71,7 @@ export function prepare(
       beta: second.task,
     },
     allows: rest.length > 0 ? crossCheck(refs, rest) : null,
-    fixed: combinations === 1,
+    fixed: refs.every((ref) => lists[ref]?.length === 1),
     grain: alpha ? GRAIN / Math.sqrt(combinations) : GRAIN / combinations,
     knobs: alpha ? 2 : 1,
   }

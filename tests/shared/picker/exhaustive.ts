@@ -36,11 +36,13 @@ export function exhaust(request: PickRequest): Exhaustive | null {
   const best = nearest.slice(0, count)
   const first = best[0] as Pick
 
-  const toleranceError = sensitivity(request, first) / span(request)
+  const toleranceError = Math.max(...spreads(request, first.values)) / span(request)
   const threshold = Math.max(first.error, toleranceError / 10)
   const weight = Math.max(threshold, 1e-9)
   const practical = collect(request, refs, lists, errors, threshold)
-  const picks = classes(request, refs, practical, 1, weight).slice(0, count)
+  const picks = classes(request, refs, practical, 1, weight)
+    .filter((pick) => staysInside(request, pick))
+    .slice(0, count)
   return {
     optimum: Math.min(...best.map((pick) => pick.error)),
     toleranceError,
@@ -217,23 +219,32 @@ function onShelf(value: number): boolean {
   return MANTISSAS.E24.some((tenths) => Math.abs(tenths / 10 - mantissa) < 1e-9)
 }
 
-/** Worst end of Σ |R·∂u/∂R|·tolerance, V, by central differences. */
-function sensitivity(request: PickRequest, pick: Pick): number {
+/** Σ |R·∂u/∂R|·tolerance at both ends, V, by central differences. */
+export function spreads(request: PickRequest, values: Record<string, number>): number[] {
   const form =
     request.form.kind === 'gain-single'
       ? { ...request.form, gainMinimum: 0, gainMaximum: Infinity }
       : request.form
   const evaluate = closedForm(form)
   const step = 1e-5
-  return Math.max(
-    ...form.signal.map((signal) =>
-      Object.entries(pick.values).reduce((sum, [ref, value]) => {
-        const up = evaluate({ ...pick.values, [ref]: value * (1 + step) })
-        const down = evaluate({ ...pick.values, [ref]: value * (1 - step) })
-        const slope = ((up.gain - down.gain) * signal + up.offset - down.offset) / (2 * step)
-        return sum + Math.abs(slope) * (request.tolerance[ref] ?? 0)
-      }, 0),
-    ),
+  return form.signal.map((signal) =>
+    Object.entries(values).reduce((sum, [ref, value]) => {
+      const up = evaluate({ ...values, [ref]: value * (1 + step) })
+      const down = evaluate({ ...values, [ref]: value * (1 - step) })
+      const slope = ((up.gain - down.gain) * signal + up.offset - down.offset) / (2 * step)
+      return sum + Math.abs(slope) * (request.tolerance[ref] ?? 0)
+    }, 0),
+  )
+}
+
+/** Whether both ends stay in the range asked for with every resistor at its limit. */
+export function staysInside(request: PickRequest, pick: Pick): boolean {
+  const { inside } = request
+  if (!inside) return true
+  const [low, high] = spreads(request, pick.values) as [number, number]
+  return (
+    Math.min(pick.ends[0] - low, pick.ends[1] - high) >= inside[0] &&
+    Math.max(pick.ends[0] + low, pick.ends[1] + high) <= inside[1]
   )
 }
 

@@ -12,6 +12,8 @@ export type Typed = Readonly<Record<string, TypedText>>
 export interface Snapshot {
   document: DraftDocument
   typed: Typed
+  /** Changes where the whole document was replaced: figures of another origin say nothing about this one. */
+  origin: number
 }
 
 export interface HistoryEntry extends Snapshot {
@@ -30,6 +32,8 @@ export interface DraftState extends Snapshot {
   edits: number
   /** Rises when values change from outside the fields (undo, replaced document), so that they show them. */
   revision: number
+  /** Origins given so far. */
+  origins: number
 }
 
 export interface Change {
@@ -60,7 +64,7 @@ export type DraftAction =
 const DEPTH = 300
 
 export function createDraft(document: DraftDocument, typed: Typed = {}): DraftState {
-  return { document, typed, past: [], future: [], open: null, edits: 0, revision: 0 }
+  return { document, typed, origin: 0, origins: 0, past: [], future: [], open: null, edits: 0, revision: 0 }
 }
 
 export function draftReducer(state: DraftState, action: DraftAction): DraftState {
@@ -87,11 +91,13 @@ export function draftReducer(state: DraftState, action: DraftAction): DraftState
         ...remember(state, action.label, null),
         document: action.document,
         typed: {},
+        ...newOrigin(state),
         revision: state.revision + 1,
       }
     case 'load':
       return {
         ...createDraft(action.document, action.typed),
+        ...newOrigin(state),
         edits: state.edits,
         revision: state.revision + 1,
       }
@@ -102,9 +108,12 @@ export function draftReducer(state: DraftState, action: DraftAction): DraftState
   }
 }
 
+const newOrigin = ({ origins }: DraftState) => ({ origin: origins + 1, origins: origins + 1 })
+
 /** Pushes the present onto the past; the future is gone as soon as something new is done. */
 function remember(state: DraftState, label: string, path: string | null): DraftState {
-  const entry: HistoryEntry = { document: state.document, typed: state.typed, label, path }
+  const { document, typed, origin } = state
+  const entry: HistoryEntry = { document, typed, origin, label, path }
   return {
     ...state,
     past: [...state.past, entry].slice(-DEPTH),
@@ -114,7 +123,12 @@ function remember(state: DraftState, label: string, path: string | null): DraftS
   }
 }
 
-function typedInto(state: DraftState, path: string, label: string, next: Snapshot): DraftState {
+function typedInto(
+  state: DraftState,
+  path: string,
+  label: string,
+  next: Omit<Snapshot, 'origin'>,
+): DraftState {
   const before = state.typed[path]
   const after = next.typed[path]
   // The same text read again (a field that is only left) is no change.
@@ -137,15 +151,13 @@ function set(state: DraftState, changes: readonly Change[], label: string, path:
 function travel(state: DraftState, from: 'past' | 'future'): DraftState {
   const entry = state[from].at(-1)
   if (!entry) return state
-  const here: HistoryEntry = {
-    document: state.document,
-    typed: state.typed,
-    label: entry.label,
-    path: entry.path,
-  }
+  const { document, typed, origin, origins } = state
+  const here: HistoryEntry = { document, typed, origin, label: entry.label, path: entry.path }
   return {
     document: entry.document,
     typed: entry.typed,
+    origin: entry.origin,
+    origins,
     past: from === 'past' ? state.past.slice(0, -1) : [...state.past, here],
     future: from === 'future' ? state.future.slice(0, -1) : [...state.future, here],
     open: null,

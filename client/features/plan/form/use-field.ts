@@ -1,4 +1,5 @@
 import { useMemo } from 'react'
+import type { Fault } from '#shared/design/plan.ts'
 import { getAt } from '../draft/paths.ts'
 import { usePlanner } from '../planner-context.tsx'
 import { nodeOfPath } from '../words/nodes.ts'
@@ -16,7 +17,7 @@ export function useField(path: string) {
     id: fieldId(path),
     value: getAt(state.document, path),
     typed: state.typed[path],
-    error: fault ? `${capital(fault.reason)}. Accepted: ${fault.accepted}.` : undefined,
+    error: fault ? faultText(fault) : undefined,
     disabled: readOnly !== null,
     type: (value: unknown, text: string, label: string) =>
       dispatch({ type: 'type', path, value, text, label }),
@@ -32,5 +33,9 @@ export function useField(path: string) {
     leave: () => dispatch({ type: 'leave', path }),
   }
 }
+
+/** What is wrong and what is accepted, with a true minus before figures. */
+export const faultText = ({ reason, accepted }: Fault): string =>
+  `${capital(reason)}. Accepted: ${accepted}.`.replace(/(^|[ (])-(?=\d)/g, '$1−')
 
 const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)

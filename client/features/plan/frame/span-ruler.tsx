@@ -1,4 +1,4 @@
-import { scaleLinear } from 'd3-scale'
+import { scaleLinear, type ScaleLinear } from 'd3-scale'
 import { spanText } from '#shared/note/answers.ts'
 import { toLinearSpan, type Span } from '#shared/note/span.ts'
 import { formatNumber, formatRange } from '#shared/units/format-quantity.ts'
@@ -25,7 +25,7 @@ export function SpanRuler() {
   const x = scaleLinear()
     .domain([Math.min(linear.low, required.low), Math.max(linear.high, required.high)])
     .range([MARGIN, WIDTH - MARGIN])
-  const ticks = x.ticks(5)
+  const ticks = fittingTicks(x, quantity.unit)
   const direction = high >= low ? 1 : -1
   const label = `${quantity.name}: required ${formatRange(low, high, quantity.unit)}, linear on every board ${spanText(
     toLinearSpan(candidate.levels, planned.design.sensor.quantity, true),
@@ -78,6 +78,22 @@ export function SpanRuler() {
       ))}
     </svg>
   )
+}
+
+/** As many round ticks as have room for their figures; the last one carries the unit. */
+function fittingTicks(x: ScaleLinear<number, number>, unit: string): number[] {
+  for (const count of [5, 4, 3, 2]) {
+    const ticks = x.ticks(count)
+    const widths = ticks.map(
+      (tick, i) => (formatNumber(tick) + (i === ticks.length - 1 ? ` ${unit}` : '')).length * 5.6,
+    )
+    const fits = ticks.every((tick, i) => {
+      const next = ticks[i + 1]
+      return next === undefined || x(next) - x(tick) > ((widths[i] ?? 0) + (widths[i + 1] ?? 0)) / 2 + 4
+    })
+    if (fits) return ticks
+  }
+  return x.ticks(1)
 }
 
 function ordered({ low, high }: Span): Span {

@@ -12,6 +12,8 @@ export interface Planned {
   document: DesignDocument
   design: Design
   plan: Plan
+  /** Origin of the draft that it was made of. */
+  origin: number
 }
 
 export interface PlanState {
@@ -57,13 +59,20 @@ export function createPlanSession(
   let asked = new AbortController()
 
   const update = () => {
-    const { document: now } = draft.getState()
+    const { document: now, origin } = draft.getState()
     if (now === seen) return
     seen = now
     asked.abort()
     const read = readDesign(now)
     if (!read.ok) {
-      planning.set((state) => ({ ...state, status: 'refused', faults: read.faults, message: null }))
+      planning.set((state) => ({
+        ...state,
+        // The last good figures are worth showing only as long as they are about the same work.
+        planned: state.planned?.origin === origin ? state.planned : null,
+        status: 'refused',
+        faults: read.faults,
+        message: null,
+      }))
       return
     }
     asked = new AbortController()
@@ -72,7 +81,7 @@ export function createPlanSession(
     planner(read.document, { signal }).then(
       (plan) => {
         if (signal.aborted) return
-        const planned = { document: read.document, design: read.design, plan }
+        const planned = { document: read.document, design: read.design, plan, origin }
         planning.set({ ...initial, planned, status: 'current', at: new Date().toISOString() })
       },
       (error: unknown) => {

@@ -1,6 +1,7 @@
 import { ValueField } from '#client/components/value-field.tsx'
 import { numberAt, textAt } from '../draft/paths.ts'
 import { SchemaField } from '../form/schema-field.tsx'
+import { faultText } from '../form/use-field.ts'
 import { usePlanner } from '../planner-context.tsx'
 import { fieldId } from '../words/steps.ts'
 import { Cautions, Fields, StepHead } from './step-parts.tsx'
@@ -64,7 +65,7 @@ function TargetFields() {
           value={limit}
           disabled={readOnly !== null}
           {...(typed ? { text: typed.text } : {})}
-          {...(fault ? { error: `${fault.reason}. Accepted: ${fault.accepted}.` } : {})}
+          {...(fault ? { error: faultText(fault) } : {})}
           onChange={(value, text) =>
             value === null
               ? dispatch({ type: 'set', changes: [{ path: 'target', value: undefined }], label, path })

@@ -2,6 +2,7 @@ import { ValueField } from '#client/components/value-field.tsx'
 import type { Candidate } from '#shared/design/plan.ts'
 import { formatNumber } from '#shared/units/format-quantity.ts'
 import { numberAt } from '../draft/paths.ts'
+import { faultText } from '../form/use-field.ts'
 import { usePlanner } from '../planner-context.tsx'
 import { fieldId } from '../words/steps.ts'
 
@@ -59,7 +60,7 @@ function StageValue({ path, label, unit, placeholder, also }: StageValueProps) {
       disabled={readOnly !== null}
       {...(placeholder ? { placeholder } : {})}
       {...(typed ? { text: typed.text } : {})}
-      {...(fault ? { error: `${fault.reason}. Accepted: ${fault.accepted}.` } : {})}
+      {...(fault ? { error: faultText(fault) } : {})}
       onChange={(value, text) =>
         dispatch({
           type: 'type',

@@ -1,4 +1,5 @@
 import type { ReactNode } from 'react'
+import { faultText } from '../form/use-field.ts'
 import { usePlanner } from '../planner-context.tsx'
 import { fieldId } from '../words/steps.ts'
 import { SchemaField } from '../form/schema-field.tsx'
@@ -61,11 +62,7 @@ export function FoldedFields({ title, paths, group, say }: FieldsProps) {
 function GroupFault({ path }: { path: string | undefined }) {
   const { faults } = usePlanner()
   const fault = path === undefined ? undefined : faults.get(path)
-  return fault ? (
-    <p className="plan-fault">
-      {fault.reason.charAt(0).toUpperCase() + fault.reason.slice(1)}. Accepted: {fault.accepted}.
-    </p>
-  ) : null
+  return fault ? <p className="plan-fault">{faultText(fault)}</p> : null
 }
 
 /** Cautions beside the inputs that raise them. */

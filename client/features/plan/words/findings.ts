@@ -2,7 +2,7 @@ import type { Candidate, Fault, Finding, Reason, Severity } from '#shared/design
 import { getAt, type DraftDocument } from '../draft/paths.ts'
 import { misreadFields, type Typed } from '../draft/draft-state.ts'
 import type { PlanState } from '../session/plan-session.ts'
-import { fieldAt } from '../form/introspect.ts'
+import { fieldAt, leavesOf } from '../form/introspect.ts'
 import { stepOfPath, type StepId } from './steps.ts'
 
 /** A finding as the column shows it: a headline, the rest of the sentence, and where it leads. */
@@ -38,6 +38,26 @@ const labelOfPath = (path: string, sensorKind: string): string => {
     return path
   }
 }
+
+/** Of a whole group that is missing: the answers that it needs; of a single field: what is accepted. */
+function neededText(path: string, sensorKind: string, fault: Fault): string {
+  const asked = requiredLeaves(path, sensorKind)
+  return asked.length > 0 ? `Needed: ${asked.join('; ')}.` : `Accepted: ${signs(fault.accepted)}.`
+}
+
+function requiredLeaves(path: string, sensorKind: string): string[] {
+  try {
+    const spec = fieldAt(path, sensorKind)
+    return spec.control === 'group'
+      ? leavesOf(spec).flatMap((leaf) => (leaf.required ? [leaf.label.toLowerCase()] : []))
+      : []
+  } catch {
+    return []
+  }
+}
+
+/** A true minus before figures. */
+const signs = (text: string): string => text.replace(/(^|[ (])-(?=\d)/g, '$1−')
 
 /** A key that is simply not there yet is an open question; everything else that is wrong with a value is a fault. */
 export const isOpenQuestion = (document: DraftDocument, fault: Fault): boolean =>
@@ -80,7 +100,7 @@ export function listFindings({
       key: `fault ${path} ${fault.reason}`,
       severity: open ? 'open' : 'over',
       title: open ? `Open: ${labelOfPath(path, sensorKind)}` : capital(fault.reason),
-      text: `Accepted: ${fault.accepted}.`,
+      text: open ? neededText(path, sensorKind, fault) : `Accepted: ${signs(fault.accepted)}.`,
       path,
       step: stepOfPath(path),
     })
