@@ -85,7 +85,7 @@ function BlockView({ block }: { block: Exclude<Block, { type: 'transfer' }> }): 
       return <StatementsView items={block.items} />
     case 'table':
       return (
-        <View style={{ marginBottom: 4 }}>
+        <View style={{ marginTop: 3, marginBottom: 4 }}>
           <TableView table={block.table} />
         </View>
       )

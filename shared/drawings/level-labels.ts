@@ -10,7 +10,7 @@ import {
   type LimitSide,
 } from './level-figures.ts'
 import { held, type BayScale, type LevelMeasures } from './level-scale.ts'
-import { overlaps, text, type Box, type TextShape } from './shapes.ts'
+import { text, type Box, type TextShape } from './shapes.ts'
 import { textBox } from './text-width.ts'
 
 export interface BayPlace {
@@ -89,16 +89,25 @@ export function levelLabels(
 }
 
 /** Furthest that a figure leaves its line to make way for another, px. */
-const GIVE = 18
+const GIVE = 26
 
-/** The place nearest to the wanted one at which a block of text meets nothing; `first` is the side tried first. */
+/** The place nearest to the wanted one at which a block of text meets nothing, or least; `first` is tried first. */
 function placeBlock(draw: (dy: number) => TextShape[], taken: readonly Box[], first: 1 | -1): TextShape[] {
-  const isFree = (texts: TextShape[]) => !texts.some((t) => taken.some((box) => overlaps(textBox(t), box)))
+  let best = { texts: draw(0), covered: Infinity }
   for (let distance = 0; distance <= GIVE; distance += 1) {
     for (const side of [first, -first]) {
       const texts = draw(distance * side)
-      if (isFree(texts)) return texts
+      const boxes = texts.map(textBox)
+      const covered = boxes.reduce((sum, b) => sum + taken.reduce((s, box) => s + commonArea(b, box), 0), 0)
+      if (covered === 0) return texts
+      if (covered < best.covered) best = { texts, covered }
     }
   }
-  return draw(0)
+  return best.texts
+}
+
+function commonArea(a: Box, b: Box): number {
+  const across = Math.min(a.x + a.width, b.x + b.width) - Math.max(a.x, b.x)
+  const down = Math.min(a.y + a.height, b.y + b.height) - Math.max(a.y, b.y)
+  return Math.max(0, across) * Math.max(0, down)
 }

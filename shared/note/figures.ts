@@ -32,7 +32,7 @@ export function reached(ends: Ends, unit: string): string {
  */
 export function sized(value: number, largest: number, unit: string): string {
   const top = Math.max(Math.abs(value), Math.abs(largest))
-  const text = formatRange(-Math.abs(value), top, unit, { digits: 3, rounding: 'outward', zeros: 'keep' })
+  const text = formatRange(-Math.abs(value), top, unit, { digits: 4, rounding: 'outward', zeros: 'keep' })
   return (text.split(' to ')[0] ?? '').replace('−', '')
 }
 

@@ -130,6 +130,13 @@ export function valueAt(document: unknown, path: readonly (string | number)[]): 
   )
 }
 
+/** A copy with one value set. */
+export function withValue(document: Json, path: readonly (string | number)[], value: unknown): Json {
+  const copy = structuredClone(document)
+  setAt(copy, path, value)
+  return copy
+}
+
 function setAt(document: Json, path: readonly (string | number)[], value: unknown): void {
   let at = document as Json
   path.forEach((key, i) => {
@@ -186,7 +193,7 @@ export function valueFor(leaf: Leaf, pick: () => number): unknown {
   const { rule } = leaf
   if (rule.type === 'choice') return rule.values[Math.floor(pick() * rule.values.length)]
   if (rule.type === 'text')
-    return 'Grüße µΩ 測量'.slice(0, Math.max(rule.least, 1 + Math.floor(pick() * Math.min(rule.most, 12))))
+    return 'Grüße-µΩ-測量'.slice(0, Math.max(rule.least, 1 + Math.floor(pick() * Math.min(rule.most, 12))))
   if (rule.type === 'free') return { by: ['anyone', null, 1.5, { deep: true }] }
   const { least, most, above, below, integer } = rule
   const inside = (x: number) => (above ? x > least : x >= least) && (below ? x < most : x <= most)

@@ -6,11 +6,13 @@ import { planDesign } from '#shared/design/plan-design.ts'
 import type { Plan } from '#shared/design/plan.ts'
 import { readDesign } from '#shared/design/read.ts'
 import {
+  fullDesigns,
   leavesOf,
   soundDesigns,
   valueAt,
   valueFor,
   withLeaf,
+  withValue,
   type Json,
 } from '#tests/support/random-designs.ts'
 import { createRandom } from '#tests/support/random.ts'
@@ -139,7 +141,7 @@ function acceptedChange(full: Json, leaf: Leaf): Json | null {
   const near = typeof now === 'number' ? [now * 1.1, now * 0.9, now + 1] : []
   const options = [...near, ...Array.from({ length: 60 }, () => valueFor(leaf, random)), now]
   for (const value of options) {
-    const changed = withLeaf(full, leaf, value)
+    const changed = withValue(full, leaf.path, value)
     if (readDesign(changed).ok) return changed
   }
   return null
