@@ -35,12 +35,27 @@ export function Heading({ title, aside, id }: HeadingProps): ReactNode {
 
 /** A section with its heading; `figure` is what stands for the transfer figure. */
 export function SectionView({ section, figure }: { section: Section; figure: ReactNode }): ReactNode {
+  // Heading, sentence and figure are one thing; what follows the figure may run on.
+  const together = section.blocks.findIndex((block) => block.type === 'transfer') + 1
+  const draw = (blocks: readonly Block[]) =>
+    blocks.map((block, index) => (
+      <Fragment key={index}>{block.type === 'transfer' ? figure : <BlockView block={block} />}</Fragment>
+    ))
+  const heading = <Heading title={section.title} aside={section.aside} id={section.id} />
+  if (together === 0)
+    return (
+      <View wrap={!isShort(section)}>
+        {heading}
+        {draw(section.blocks)}
+      </View>
+    )
   return (
-    <View wrap={!isShort(section)}>
-      <Heading title={section.title} aside={section.aside} id={section.id} />
-      {section.blocks.map((block, index) => (
-        <Fragment key={index}>{block.type === 'transfer' ? figure : <BlockView block={block} />}</Fragment>
-      ))}
+    <View>
+      <View wrap={false}>
+        {heading}
+        {draw(section.blocks.slice(0, together))}
+      </View>
+      {draw(section.blocks.slice(together))}
     </View>
   )
 }

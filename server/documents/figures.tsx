@@ -1,14 +1,14 @@
 import type { ReactNode } from 'react'
 import { buildNetworkFor } from '#shared/design/plan-design.ts'
-import type { Candidate, Plan } from '#shared/design/plan.ts'
-import { designSchema, type DesignDocument } from '#shared/design/schema.ts'
+import type { Candidate, Level, Plan } from '#shared/design/plan.ts'
+import { designSchema, type Design, type DesignDocument } from '#shared/design/schema.ts'
 import { layoutLevelDiagram } from '#shared/drawings/level-diagram.ts'
 import type { Box, Shape } from '#shared/drawings/shapes.ts'
 import { textBox } from '#shared/drawings/text-width.ts'
 import { noteMeasures } from '#shared/drawings/level-scale.ts'
 import { transferOf } from '#shared/drawings/transfer-input.ts'
 import { layoutTransferPlot } from '#shared/drawings/transfer-plot.ts'
-import type { Note } from '#shared/note/types.ts'
+import type { Note, Paper } from '#shared/note/types.ts'
 import { layoutSchematic } from '#shared/schematic/layout.ts'
 import type { NoteFigures } from './note-document.tsx'
 import { Drawing } from './shapes.tsx'
@@ -18,10 +18,12 @@ import { BLOCK_WIDTH } from './theme.ts'
 const BLOCK_PX = 668
 const POINTS_PER_PX = 0.75
 /** A schematic higher than this is drawn smaller, so that the first sheet keeps its parts table ... */
-const SCHEMATIC_PX = 190
+const SCHEMATIC_PX = { A4: 190, Letter: 150 } as const
 /** ... but not so small that its lettering, which stays at 7 pt, would touch. */
 const SMALLEST_SCALE = 0.8
 
+/** Height of the linear region in the level diagram. */
+const REGION_PX = { A4: 96, Letter: 88 } as const
 const TRANSFER_PX = 330
 
 interface FiguresInput {
@@ -30,52 +32,50 @@ interface FiguresInput {
   note: Note
 }
 
-type Quantity = DesignDocument['sensor']['quantity']
-
 /** The figures of a note, from the same geometry as on screen. */
 export function drawFigures({ document, plan, note }: FiguresInput): NoteFigures {
   const candidate = plan.chosen === null ? null : (plan.candidates[plan.chosen] ?? null)
-  const { quantity } = document.sensor
+  if (!candidate) return { levels: null, schematic: null, transfer: null }
+  const design = designSchema.parse(document)
   return {
-    levels: note.first.levels ? drawLevels(note.first.levels.levels, quantity, document.rules?.room) : null,
-    schematic:
-      note.first.schematic && candidate ? drawSchematic(document, candidate, note.meta.symbols) : null,
-    transfer: candidate ? drawTransfer(document, candidate) : null,
+    levels: note.first.levels ? drawLevels(note.first.levels.levels, design, note.meta.paper) : null,
+    schematic: note.first.schematic ? drawSchematic(document, candidate, note.meta) : null,
+    transfer: drawTransfer(design, candidate),
   }
 }
 
-function drawLevels(
-  levels: NonNullable<Candidate['levels']>,
-  quantity: Quantity,
-  rule: number | undefined,
-): ReactNode {
+function drawLevels(levels: readonly Level[], design: Design, paper: Paper): ReactNode {
   const drawing = layoutLevelDiagram(levels, {
     mode: 'share',
     worst: true,
-    quantity,
-    measures: { ...noteMeasures(levels.length, BLOCK_PX), column: BLOCK_PX / levels.length, region: 96 },
-    ...(rule === undefined ? {} : { rule }),
+    quantity: design.sensor.quantity,
+    rule: design.rules.room,
+    measures: {
+      ...noteMeasures(levels.length, BLOCK_PX),
+      column: BLOCK_PX / levels.length,
+      region: REGION_PX[paper],
+    },
   })
   const box = enclose({ x: 0, y: 0, width: BLOCK_PX, height: drawing.height }, drawing.shapes)
   return <Drawing shapes={drawing.shapes} box={box} width={BLOCK_WIDTH} />
 }
 
 /** Scaled down where it would be wider than the text block or too high; otherwise at its own size. */
-function drawSchematic(document: DesignDocument, candidate: Candidate, symbols: 'iec' | 'ansi'): ReactNode {
+function drawSchematic(document: DesignDocument, candidate: Candidate, meta: Note['meta']): ReactNode {
   const network = buildNetworkFor(document, candidate)
   if (!network) return null
   const drawing = layoutSchematic(network, {
-    symbols,
+    symbols: meta.symbols,
     labels: { VSENSE: document.sensor.quantity.name, converter: `${document.converter.bits} bit` },
   })
   const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)
-  const scale = Math.min(1, BLOCK_PX / box.width, Math.max(SMALLEST_SCALE, SCHEMATIC_PX / box.height))
+  const byHeight = Math.max(SMALLEST_SCALE, SCHEMATIC_PX[meta.paper] / box.height)
+  const scale = Math.min(1, BLOCK_PX / box.width, byHeight)
   return <Drawing shapes={drawing.shapes} box={box} width={box.width * scale * POINTS_PER_PX} />
 }
 
-function drawTransfer(document: DesignDocument, candidate: Candidate): ReactNode {
-  const { sensor, converter } = designSchema.parse(document)
-  const input = transferOf(candidate, sensor.quantity, converter)
+function drawTransfer(design: Design, candidate: Candidate): ReactNode {
+  const input = transferOf(candidate, design.sensor.quantity, design.converter)
   if (!input) return null
   const drawing = layoutTransferPlot(input, { height: TRANSFER_PX })
   const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)

@@ -1,16 +1,4 @@
-import {
-  Circle,
-  ClipPath,
-  Defs,
-  G,
-  Line,
-  Path,
-  Polygon,
-  Polyline,
-  Rect,
-  Svg,
-  Text,
-} from '@react-pdf/renderer'
+import { Circle, G, Line, Path, Polygon, Polyline, Rect, Svg, Text } from '@react-pdf/renderer'
 import type { ReactNode } from 'react'
 import { hatchLines } from '#shared/drawings/hatch.ts'
 import type { Box, LineShape, Shape, TextShape } from '#shared/drawings/shapes.ts'

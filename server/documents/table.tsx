@@ -12,7 +12,7 @@ export function TableView({ table }: { table: Table }): ReactNode {
   const width = (column: Column) => ({ width: `${(100 * column.share) / total}%` })
   return (
     <View>
-      <View style={styles.headRow} fixed>
+      <View style={styles.headRow} minPresenceAhead={44} fixed>
         {table.columns.map((column, index) => (
           <Print
             key={index}

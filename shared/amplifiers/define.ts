@@ -47,6 +47,9 @@ export interface Sizing {
   dropsOffset: boolean
 }
 
+/** A sizing without its aim. */
+export type Anatomy = Omit<Sizing, 'target' | 'dropsOffset'>
+
 export type Consideration = { ok: true; sizing: Sizing } | { ok: false; reason: Reason }
 
 export interface Arrangement {
@@ -60,6 +63,11 @@ export interface Arrangement {
   roles: Record<string, string>
   /** Whether it exists for this need by its ideal-model equations. */
   consider(need: Need): Consideration
+  /**
+   * What it is made of, whether or not it suits the need: for a circuit that exists. `fixed` are the values known, Ω by
+   * ref. Null where it cannot be built at all, for want of a reference.
+   */
+  anatomy(need: Need, fixed: Record<string, number>): Anatomy | null
   /** Adds its elements; values in Ω by ref. */
   build(stage: StageBuilder, values: Record<string, number>, sizing: Sizing, need: Need): void
   /** Its gain and offset equations with the numbers put in. */
@@ -80,3 +88,10 @@ export const refuse = (code: string, text: string, numbers: Record<string, numbe
   ok: false,
   reason: { code, text, numbers },
 })
+
+/** The anatomy of an arrangement that is known to exist for the need. */
+export function anatomyOf(arrangement: Arrangement, need: Need): Anatomy {
+  const anatomy = arrangement.anatomy(need, {})
+  if (!anatomy) throw new RangeError(`${arrangement.id} has no reference to be built with`)
+  return anatomy
+}

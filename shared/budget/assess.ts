@@ -193,7 +193,8 @@ function everyBoard(
     model: 'real',
     resistors: chain.resistors,
     variables: chain.variables,
-    cmrr: chain.errors.map((e) => ({ ref: e.ref, x: e.cmrr, reference: e.reference })),
+    // x/(1 − x/2) makes the first-order form an outer bound of the exact row.
+    cmrr: chain.errors.map((e) => ({ ref: e.ref, x: e.cmrr / (1 - e.cmrr / 2), reference: e.reference })),
     outputs,
     cases,
     ...(depth === 'with-clips' ? { clip: { variable: chain.signal.variable } } : {}),

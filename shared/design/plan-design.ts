@@ -22,7 +22,8 @@ import {
   type Trial,
   type TrialResult,
 } from './plan-stage.ts'
-import { askedArrangement, splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
+import { askedArrangement } from './asked.ts'
+import { splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
 import type { Candidate, Ends, Plan, Realised } from './plan.ts'
 import { rankTrial } from './ranking.ts'
 import { DesignRefused, readDesign } from './read.ts'

@@ -1,11 +1,14 @@
 import { arrangements } from '#shared/amplifiers/index.ts'
 import type { Arrangement, Need } from '#shared/amplifiers/define.ts'
+import { formRefs } from '#shared/amplifiers/picker/index.ts'
+import { oriented } from '#shared/amplifiers/place.ts'
 import { assess, type AssessDepth, type Assessment } from '#shared/budget/assess.ts'
 import { guardDeficits, stateOf } from '#shared/budget/headroom.ts'
 import { toLoads } from '#shared/budget/loads.ts'
 import { sizeFilter } from '#shared/filters/rc.ts'
 import { kindOf } from '#shared/sensors/index.ts'
 import { CircuitError } from '#shared/network/circuit-error.ts'
+import { askedArrangement } from './asked.ts'
 import { sensorContext, type ChainSpec, type StageChoice } from './chain.ts'
 import { clipReason, loadReason } from './findings.ts'
 import type { Ends, Reason } from './plan.ts'
@@ -183,8 +186,8 @@ function settleWith(
       }
     if (moveInset)
       inset = {
-        low: inset.low + Math.max(0, deficits.beyond.low),
-        high: inset.high + Math.max(0, deficits.beyond.high),
+        low: inset.low + moveBy(deficits.beyond.low, range),
+        high: inset.high + moveBy(deficits.beyond.high, range),
       }
     if (guard.low + guard.high >= 0.98) break
   }
@@ -203,6 +206,9 @@ function settleWith(
         ],
       }
 }
+
+/** A little more than what is missing: standard values come in steps, and the exact amount would chase them. */
+const moveBy = (deficit: number, range: number): number => (deficit > 0 ? 1.5 * deficit + 1e-4 * range : 0)
 
 const stepUp = (fraction: number): number => Math.ceil(fraction / GUARD_STEP - 1e-9) * GUARD_STEP
 
@@ -243,19 +249,47 @@ function assessTrial(design: Design, parts: TrialParts, depth: AssessDepth): Tri
 /** Considers one arrangement as the only stage. */
 export function trySingle(design: Design, arrangement: Arrangement): TrialResult {
   const { need: base } = requirementOf(design)
-  return settleChain(design, arrangement.id, arrangement.title, (target) => {
+  const size: SizeChain = (target) => {
     const need: Need = { ...base, target }
     const stage = sizeOne(design, arrangement, need, '', design.choose.pick ?? 0)
     return stage.ok
       ? { ok: true, stages: [{ ref: 'S1', arrangement, sized: stage.sized, need }] }
       : { ok: false, reasons: [stage.reason] }
-  })
+  }
+  const { id, title } = arrangement
+  if (!isGiven(design, arrangement, { ...base, target: design.converter.input }))
+    return settleChain(design, id, title, size)
+  // A circuit that exists moves with no guard band: it is judged against the target that a free choice would have had.
+  const { values: _given, ...choose } = design.choose
+  const free = trySingle({ ...design, choose }, arrangement)
+  const start = design.converter.guard ?? (free.ok ? free.trial.guard : { low: 0, high: 0 })
+  return settleWith(design, id, title, size, { keep: null, start }, 'every-board')
+}
+
+/** True where a person fixed every value that the arrangement's equations would choose. */
+export function isGiven(design: Design, arrangement: Arrangement, need: Need): boolean {
+  const fixed = design.choose.values ?? {}
+  const anatomy = arrangement.anatomy(need, fixed)
+  if (!anatomy?.form) return false
+  const copies = Object.entries(anatomy.copies ?? {})
+  return formRefs(anatomy.form).every(
+    (ref) => fixed[ref] !== undefined || copies.some(([copy, of]) => of === ref && fixed[copy] !== undefined),
+  )
 }
 
 /** Ideal-model existence, then standard values. */
 export function sizeOne(design: Design, arrangement: Arrangement, need: Need, suffix: string, pick: number) {
   const considered = arrangement.consider(need)
-  if (!considered.ok) return { ok: false as const, reason: considered.reason }
+  if (!considered.ok) {
+    const anatomy =
+      suffix === '' && askedArrangement(design) === arrangement.id && isGiven(design, arrangement, need)
+        ? arrangement.anatomy(need, design.choose.values ?? {})
+        : null
+    if (!anatomy) return { ok: false as const, reason: considered.reason }
+    // The equations would not ask for it, yet it exists: the analyses say what it does.
+    const sizing = { ...anatomy, target: oriented(need, arrangement.inverting ? -1 : 1), dropsOffset: false }
+    return sizeStage(design, arrangement, need, sizing, suffix, pick)
+  }
   return sizeStage(design, arrangement, need, considered.sizing, suffix, pick)
 }
 

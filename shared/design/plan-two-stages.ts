@@ -4,6 +4,7 @@ import { slope } from '#shared/amplifiers/define.ts'
 import { oriented } from '#shared/amplifiers/place.ts'
 import type { Ends } from './plan.ts'
 import type { Design } from './schema.ts'
+import { askedArrangement } from './asked.ts'
 import { arrangementsFor, requirementOf, settleChain, sizeOne, type TrialResult } from './plan-stage.ts'
 
 /** Above this total gain a split can keep more loop gain in each stage. */
@@ -46,16 +47,6 @@ export function splitsFor(design: Design, singleFound: boolean): Split[] {
   return firsts.flatMap((first) =>
     seconds.flatMap((second) => gains.map((gain) => ({ first, second, gain }))),
   )
-}
-
-/** Which arrangement a person asks for: by its id, or stage by stage. */
-export function askedArrangement(design: Design): string | undefined {
-  const { arrangement, stages } = design.choose
-  if (arrangement !== undefined) return arrangement
-  const [first, second] = (['S1', 'S2'] as const).map(
-    (ref) => stages?.find((s) => s.ref === ref)?.arrangement,
-  )
-  return first !== undefined && second !== undefined ? `${first}+${second}` : first
 }
 
 /** Gain that a person gives the first stage, directly or by what the second is to have. */
@@ -118,5 +109,11 @@ function firstTarget(design: Design, split: Split, base: Omit<Need, 'target'>): 
   const bottom = design.rails.negative + part.outputLow
   const top = design.rails.positive - part.outputHigh
   const middle = (bottom + top) / 2
-  return { low: middle - span / 2, high: middle + span / 2 }
+  const centred = { low: middle - span / 2, high: middle + span / 2 }
+  if (split.first.id.endsWith('-at-reference') || !base.reference) return centred
+  // A divider gives levels between ground and the reference only.
+  const level = centred.low - (span / (base.signal.high - base.signal.low)) * base.signal.low
+  const reach =
+    Math.min(Math.max(level, 0.05 * base.reference.voltage), 0.95 * base.reference.voltage) - level
+  return { low: centred.low + reach, high: centred.high + reach }
 }

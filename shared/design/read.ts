@@ -175,6 +175,9 @@ export function metaAt(path: readonly PropertyKey[], given?: unknown) {
     at = typeof at === 'object' && at !== null ? (at as Record<PropertyKey, unknown>)[key] : undefined
   }
   node = unwrap(node)
+  // A choice of texts has options too, which are no schemas.
+  if (typeof node?.options?.[0] === 'object')
+    node = unwrap(node.options.find((option) => matches(unwrap(option), at)))
   return node ? fieldMeta.get(node as never) : undefined
 }
 

@@ -156,11 +156,10 @@ function roomShapes(
   const inside = gap >= INSIDE * size
   const along = x + bay - 15 * size
   const dimension = verticalDimension(along, limit, end, tone, !inside)
-  const anchor = { scale: size, on: inside ? ('sheet' as const) : ('wash' as const) }
   // Outside the gap the figure stands on the signal; where that is too thin, on its far side.
-  const thickness = Math.abs(other - end)
-  const beside =
-    thickness >= 20 * size ? end + away * (upper ? 16 : 6) * size : other + away * (upper ? 16 : 6) * size
+  const onSignal = !inside && Math.abs(other - end) >= 20 * size
+  const beside = (onSignal ? end : other) + away * (upper ? 16 : 6) * size
+  const anchor = { scale: size, on: onSignal ? ('wash' as const) : ('sheet' as const) }
   const y = inside ? (limit + end) / 2 + 4 * size : beside
   return [...dimension, text(`room-${tone}`, along - 7, y, figure, 'end', anchor)]
 }

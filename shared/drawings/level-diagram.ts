@@ -80,14 +80,17 @@ export function layoutLevelDiagram(levels: readonly Level[], options: LevelOptio
   })
   const headings = places.flatMap((place, i) => headingShapes(place, places[i + 1], measures, options))
   const key = measures.gutter > 0 ? levelKey(options.worst) : []
+  const shapes = [...links, ...bays.flatMap((bay) => bay.shapes), ...headings, ...key]
+  // A figure that made way for another may stand below the bay.
+  const lowest = shapes.flatMap((s) => (s.type === 'text' ? [textBox(s)] : [])).map((b) => b.y + b.height)
   return {
     width: measures.gutter + measures.column * levels.length,
-    height: measures.top + measures.region + 2 * measures.poche + 3,
+    height: Math.ceil(Math.max(measures.top + measures.region + 2 * measures.poche + 3, ...lowest)),
     bays,
     links,
     headings,
     key,
-    shapes: [...links, ...bays.flatMap((bay) => bay.shapes), ...headings, ...key],
+    shapes,
     caption: caption(levels, options, scales[0]?.times ?? 1),
   }
 }

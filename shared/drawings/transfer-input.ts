@@ -10,6 +10,7 @@ export interface TransferInput {
   /** Converter input at quantity.low and quantity.high, real amplifiers: nominal, and over every board. */
   nominal: Ends
   worst: { low: Ends; high: Ends }
+  /** Whole codes between the two ends. */
   codesUsed: number
   /** Linear region at the converter input, V. */
   region: Ends
@@ -32,7 +33,8 @@ export function transferOf(
     converter,
     nominal: realised.converter,
     worst: realised.worst,
-    codesUsed: realised.codesUsed,
+    // Whole codes, never more than there are.
+    codesUsed: Math.floor(realised.codesUsed),
     region: last.region,
     linear: linearSpan(levels, quantity, 'clipsAt'),
     worstLinear: linearSpan(levels, quantity, 'worstClipsAt'),

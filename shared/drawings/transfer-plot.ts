@@ -14,6 +14,7 @@ import {
   type Point,
   type Shape,
 } from './shapes.ts'
+import { textWidth } from './text-width.ts'
 import { readTransfer, voltsAt, type TransferInput } from './transfer-input.ts'
 
 export interface TransferOptions {
@@ -36,7 +37,7 @@ export interface TransferDrawing {
   quantityAt(x: number): number
 }
 
-const MARGIN = { left: 56, right: 108, top: 20, bottom: 88 }
+const MARGIN = { left: 72, right: 108, top: 20, bottom: 88 }
 /** Share of the required span that is shown past a limit, and at most past the required span. */
 const PAST = 0.06
 const FARTHEST = 0.6
@@ -360,7 +361,12 @@ function roomDimension(y: number, limit: number, end: number, words: string): Sh
       ],
       true,
     ),
-    text('room-clear', limit + away * 20, y + 4, words, away < 0 ? 'end' : 'start', { on: 'sheet' }),
+    // A long figure is kept inside the drawing.
+    away < 0
+      ? text('room-clear', Math.max(limit - 20, textWidth(words, 'room-clear') + 2), y + 4, words, 'end', {
+          on: 'sheet',
+        })
+      : text('room-clear', limit + 20, y + 4, words, 'start', { on: 'sheet' }),
   ]
 }
 

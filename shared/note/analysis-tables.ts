@@ -65,13 +65,13 @@ export function toClipText(
 export function toModelTable(entries: readonly ModelEntry[]): Table {
   return {
     columns: [
-      { title: 'Amplifier', share: 18, strong: true },
+      { title: 'Amplifier', share: 16, strong: true },
       { title: 'Between inputs', share: 14, align: 'right' },
       { title: 'Into inputs', share: 13, align: 'right' },
       { title: 'Loop gain', share: 13, align: 'right' },
       { title: 'Gain error', share: 14, align: 'right' },
-      { title: 'In codes', share: 12, align: 'right' },
-      { title: 'At bandwidth', share: 14, align: 'right' },
+      { title: 'In codes', share: 15, align: 'right' },
+      { title: 'At bandwidth', share: 18, align: 'right' },
       { title: 'Holds to', share: 14, align: 'right' },
       { title: 'State', share: 13 },
     ],
@@ -133,7 +133,7 @@ export function toLoadTable(loads: readonly Load[]): Table {
     rows: loads.map((load): Row => ({
       state: load.state,
       cells: [
-        load.node,
+        sources[load.node] ?? load.node,
         upward(load.source, 'A'),
         figure(load.allowed.source, 'A'),
         upward(load.sink, 'A'),

@@ -81,7 +81,7 @@ function toFirstSheet(
     cautions: toCautions(plan),
     titleBlock: toTitleBlock(design, context),
     statement: toStatement(context),
-    hashLine: `SHA-256 ${shortHash(plan.designHash)}, first 64 bits of the design's hash; the full value stands on the last sheet.`,
+    hashLine: `SHA-256 ${shortHash(plan.designHash)}, first 64 bits of the design's hash; the full value stands under Record.`,
   }
 }
 

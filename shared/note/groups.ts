@@ -12,7 +12,7 @@ import {
 import { toCandidatesTable, toDrawnRef, toPicksTable } from './candidates-table.ts'
 import { toAssumptions, toCautions } from './conditions.ts'
 import { toDesignValues } from './design-values.ts'
-import { figure, sentence } from './figures.ts'
+import { figure } from './figures.ts'
 import { toFindings } from './findings.ts'
 import { toPickSentence } from './parts-table.ts'
 import { toSlope } from './span.ts'
@@ -29,11 +29,11 @@ interface Input {
 /** The sheets after the first one; sections without content are left out, tables numbered as they come. */
 export function toGroups(input: Input): SheetGroup[] {
   const { candidate } = input
-  const number = numbering()
+  const number = numbering(candidate?.feasible ? 2 : 1)
   const groups: SheetGroup[] = []
   const add = (id: string, title: string, sections: (Section | null)[]) => {
     const present = sections.filter((section) => section !== null)
-    if (present.length > 0) groups.push({ id, title, newSheet: id !== 'basis', sections: present })
+    if (present.length > 0) groups.push({ id, title, newSheet: id === 'record', sections: present })
   }
   if (candidate)
     add('analysis', 'Equations, headroom and model', [
@@ -54,7 +54,8 @@ export function toGroups(input: Input): SheetGroup[] {
       { type: 'table', table: toCandidatesTable(input.plan) },
     ]),
   ])
-  add('record', 'Netlist, design values and record', [
+  add('record', 'Record, netlist and design values', [
+    record(input.plan),
     candidate?.netlist ? netlist(candidate.netlist) : null,
     section('values', 'Design values', [
       {
@@ -63,15 +64,14 @@ export function toGroups(input: Input): SheetGroup[] {
       },
       { type: 'values', groups: toDesignValues(input.document, input.design) },
     ]),
-    record(input.plan),
   ])
   return groups
 }
 
-/** Table 1 is on the first sheet. */
-function numbering(): () => number {
-  let last = 1
-  return () => (last += 1)
+/** Numbers of tables from `first` on; table 1 of a plan that stands is on the first sheet. */
+function numbering(first: number): () => number {
+  let next = first
+  return () => next++
 }
 
 const section = (id: string, title: string, blocks: Block[], aside?: string): Section => ({

@@ -32,21 +32,20 @@ export function layoutSchematic(network: Network, options: SchematicOptions = {}
   const moved = moveDrawing({ parts, wires: drawn.wires, terminals: drawn.terminals }, dx, dy)
   const junctions = findJunctions(moved)
   const chain = complete ? stageChain(moved.parts) : []
+  const background = [
+    ...moved.wires.map(({ points }): Shape => ({ type: 'polyline', points, style: 'wire' })),
+    ...moved.terminals.flatMap((t) => [...t.shapes, ...t.labels]),
+    ...junctions.map(({ x, y }) => circle('junction', x, y, 2.2)),
+    ...chain,
+  ]
   return {
     width: Math.ceil(area.x + area.width + dx + MARGIN),
     height: Math.ceil(area.y + area.height + dy + MARGIN),
     ...moved,
     junctions,
     chain,
-    shapes: [
-      ...moved.wires.map(({ points }): Shape => ({ type: 'polyline', points, style: 'wire' })),
-      ...moved.parts.flatMap((p) => p.shapes),
-      ...moved.terminals.flatMap((t) => t.shapes),
-      ...junctions.map(({ x, y }) => circle('junction', x, y, 2.2)),
-      ...moved.parts.flatMap((p) => p.labels),
-      ...moved.terminals.flatMap((t) => t.labels),
-      ...chain,
-    ],
+    background,
+    shapes: [...background, ...moved.parts.flatMap((p) => [...p.shapes, ...p.labels])],
     listed: !complete,
   }
 }

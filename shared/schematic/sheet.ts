@@ -277,6 +277,8 @@ function roughBox(label: TextShape) {
 
 /** "4k7", or "?" where the value is not set. */
 export function valueText(device: Device): string {
-  const { value, kind } = device.element
-  return Number.isFinite(value) && value >= 0 ? toRkm(value, kind === 'capacitor' ? 'F' : 'Ω') : '?'
+  const { value, kind, fixed } = device.element
+  if (!Number.isFinite(value) || value < 0) return '?'
+  // Resistances of the source move with the signal: four digits tell them.
+  return toRkm(value, kind === 'capacitor' ? 'F' : 'Ω', fixed ? 4 : 6)
 }

@@ -66,6 +66,8 @@ export interface SchematicDrawing {
   junctions: SchematicJunction[]
   /** Stages as a chain of oblique strokes above the drawing. */
   chain: Shape[]
+  /** Everything but the parts: wires, terminals, dots, the chain. */
+  background: Shape[]
   /** Everything in the order of painting. */
   shapes: Shape[]
   /** True where the circuit is not one of the known patterns: each part then stands alone, its pins named. */

@@ -27,19 +27,16 @@ export function Schematic({ network, symbols, labels, caption, lit, onLight, onP
   )
   const connections = useMemo(() => describeConnections(network), [network])
   const words = useMemo(() => new Map(connections.map((c) => [c.ref, c.text])), [connections])
-  const ground = useMemo(() => {
-    const parts = new Set(drawing.parts.flatMap((p) => [...p.shapes, ...p.labels]))
-    return drawing.shapes.filter((shape) => !parts.has(shape as never))
-  }, [drawing])
+  const partWords = useMemo(() => drawing.parts.flatMap((p) => p.labels), [drawing])
   return (
     <figure className="d-figure">
       {caption === undefined ? null : <figcaption className="d-caption">{caption}</figcaption>}
-      <div className="d-scroll" tabIndex={0} role="region" aria-label="Schematic, scrolls sideways">
+      <div className="d-scroll" tabIndex={0} role="group" aria-label="Schematic, scrolls sideways">
         <Drawing
           box={{ x: 0, y: 0, width: drawing.width, height: drawing.height }}
           label={`Schematic of ${network.title}: ${drawing.parts.length} parts in signal order`}
         >
-          <Shapes shapes={ground} />
+          <Shapes shapes={drawing.background} />
           {drawing.parts.map((part) => (
             <Part
               key={part.ref}
@@ -50,6 +47,10 @@ export function Schematic({ network, symbols, labels, caption, lit, onLight, onP
               {...(onPart ? { onPart } : {})}
             />
           ))}
+          {/* The words of each part are in its name already. */}
+          <g aria-hidden="true" className="d-words">
+            <Shapes shapes={partWords} />
+          </g>
         </Drawing>
       </div>
       <details className="d-connections">
@@ -95,7 +96,7 @@ function Part({
       className={`d-part${isLit ? ' d-lit' : ''}`}
       role={onPart ? 'button' : 'img'}
       tabIndex={0}
-      aria-label={[part.ref, part.value, words].filter(Boolean).join(', ')}
+      aria-label={[`${part.ref} ${part.value}`.trim(), words].filter(Boolean).join(', ')}
       onClick={choose}
       onKeyDown={handleKey}
       onPointerEnter={() => onLight?.(part.ref)}
@@ -111,7 +112,6 @@ function Part({
         height={bounds.height + 2 * dy}
       />
       <Shapes shapes={part.shapes} />
-      <Shapes shapes={part.labels} />
     </g>
   )
 }

@@ -22,6 +22,7 @@ import { StepLine } from './frame/step-line.tsx'
 import { usePlanKeys } from './frame/use-plan-keys.ts'
 import { PlannerProvider, type PlannerValue, type PlanPlace } from './planner-context.tsx'
 import type { PlanSession } from './session/plan-session.ts'
+import { unknownLevels } from './words/unknown-levels.ts'
 import { isOpenQuestion, listFindings, pressing, toDraftPath } from './words/findings.ts'
 import { pathOfNode } from './words/nodes.ts'
 import { stepNumber, stepOfPath, steps, stepTitle, type StepId } from './words/steps.ts'
@@ -61,7 +62,7 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
     }),
     [state.document, planning.planned],
   )
-  const levels = candidate?.levels ?? []
+  const levels = candidate?.levels ?? unknownLevels
   const lastStage = levels.at(-2)?.node ?? null
   return (
     <PlannerProvider value={value}>

@@ -4,6 +4,7 @@ import {
   intercept,
   refuse,
   slope,
+  type Anatomy,
   type Arrangement,
   type Consideration,
   type LevelFeed,
@@ -56,6 +57,11 @@ export function withLevels(base: DifferentialStage): Arrangement[] {
         ? { ...base.roles, R7: 'Level, upper leg', R8: 'Level, lower leg' }
         : base.roles,
     consider: (need) => consider(base, feed, need),
+    anatomy(need, fixed) {
+      const level = levelForm(feed, need)
+      // With a gain resistor a two-amplifier stage has more gain than 2; without one, less.
+      return level && anatomy(base, feed, need, fixed.Rg === undefined ? 1.5 : 3, level)
+    },
     build(stage, values, _sizing, need) {
       // The stage comes first, so that designators count along the signal and the buffer of the level last.
       base.build(stage, values, levelNode(stage, feed), need)
@@ -132,10 +138,7 @@ function fixedLevel(
     ok: true,
     sizing: {
       target: placed.target,
-      form: base.form(need, placed.gain, { volts: level }),
-      copies: base.copies(placed.gain),
-      preset: base.preset(need),
-      level: feed,
+      ...anatomy(base, feed, need, placed.gain, { volts: level }),
       dropsOffset: placed.short,
     },
   }
@@ -148,23 +151,42 @@ function dividerSizing(
   reference: { voltage: number; resistance: number },
   dropsOffset: boolean,
 ): Consideration {
-  const gain = slope(need, target)
+  const level = { reference: reference.voltage, referenceResistance: reference.resistance }
   return {
     ok: true,
     sizing: {
       target,
-      form: base.form(need, gain, {
-        reference: reference.voltage,
-        referenceResistance: reference.resistance,
-      }),
-      copies: base.copies(gain),
-      preset: base.preset(need),
-      level: { kind: 'divider' },
+      ...anatomy(base, { kind: 'divider' }, need, slope(need, target), level),
       dropsOffset,
     },
   }
 }
 
+function anatomy(
+  base: DifferentialStage,
+  feed: LevelFeed,
+  need: Need,
+  gain: number,
+  level: LevelForm,
+): Anatomy {
+  return {
+    form: base.form(need, gain, level),
+    copies: base.copies(gain),
+    preset: base.preset(need),
+    level: feed,
+  }
+}
+
+/** How the picker sees the level of a feed; null where the reference for it is missing. */
+function levelForm(feed: LevelFeed, need: Need): LevelForm | null {
+  if (feed.kind === 'ground') return { volts: 0 }
+  if (!need.reference) return null
+  return feed.kind === 'reference'
+    ? { volts: need.reference.voltage }
+    : { reference: need.reference.voltage, referenceResistance: need.reference.resistance }
+}
+
+/** The node at the reference leg. */
 function levelNode(stage: StageBuilder, feed: LevelFeed): string {
   if (feed.kind === 'ground') return '0'
   return feed.kind === 'reference' ? 'vref' : stage.node('level')

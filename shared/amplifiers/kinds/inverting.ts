@@ -1,5 +1,5 @@
 import { gainAndOffset, leg, noOffset, ohms, voltsText, type Leg } from '../equation.ts'
-import { intercept, refuse, slope, type Arrangement } from '../define.ts'
+import { anatomyOf, intercept, refuse, slope, type Arrangement } from '../define.ts'
 import { oriented, placeWithOffset } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
 
@@ -23,13 +23,12 @@ export const inverting: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target: placed.target,
-        form: { kind: 'inverting', signal: signalEnds(need), source: need.sourceResistance },
-        dropsOffset: placed.short,
-      },
+      sizing: { target: placed.target, ...anatomyOf(this, need), dropsOffset: placed.short },
     }
   },
+  anatomy: (need) => ({
+    form: { kind: 'inverting', signal: signalEnds(need), source: need.sourceResistance },
+  }),
   build(stage, values) {
     const sum = stage.node('sum')
     stage.resistor('Rg', stage.nodes.p, sum, values.Rg)
@@ -79,16 +78,18 @@ export const invertingUp: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target,
-        form: {
-          kind: 'inverting-up',
-          signal: signalEnds(need),
-          source: need.sourceResistance,
-          reference: reference.voltage,
-          referenceResistance: reference.resistance,
-        },
-        dropsOffset: false,
+      sizing: { target, ...anatomyOf(this, need), dropsOffset: false },
+    }
+  },
+  anatomy(need) {
+    if (!need.reference) return null
+    return {
+      form: {
+        kind: 'inverting-up',
+        signal: signalEnds(need),
+        source: need.sourceResistance,
+        reference: need.reference.voltage,
+        referenceResistance: need.reference.resistance,
       },
     }
   },
@@ -139,16 +140,18 @@ export const invertingDown: Arrangement = {
       })
     return {
       ok: true,
-      sizing: {
-        target,
-        form: {
-          kind: 'inverting-down',
-          signal: signalEnds(need),
-          source: need.sourceResistance,
-          reference: reference.voltage,
-          referenceResistance: reference.resistance,
-        },
-        dropsOffset: false,
+      sizing: { target, ...anatomyOf(this, need), dropsOffset: false },
+    }
+  },
+  anatomy(need) {
+    if (!need.reference) return null
+    return {
+      form: {
+        kind: 'inverting-down',
+        signal: signalEnds(need),
+        source: need.sourceResistance,
+        reference: need.reference.voltage,
+        referenceResistance: need.reference.resistance,
       },
     }
   },

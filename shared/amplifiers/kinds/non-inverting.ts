@@ -1,5 +1,5 @@
 import { gainAndOffset, leg, noOffset, ohms, voltsText } from '../equation.ts'
-import { intercept, refuse, slope, type Arrangement } from '../define.ts'
+import { anatomyOf, intercept, refuse, slope, type Arrangement } from '../define.ts'
 import { oriented, placeWithOffset } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
 
@@ -23,13 +23,10 @@ export const nonInverting: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target: placed.target,
-        form: { kind: 'non-inverting', signal: signalEnds(need) },
-        dropsOffset: placed.short,
-      },
+      sizing: { target: placed.target, ...anatomyOf(this, need), dropsOffset: placed.short },
     }
   },
+  anatomy: (need) => ({ form: { kind: 'non-inverting', signal: signalEnds(need) } }),
   build(stage, values) {
     const tap = stage.node('fb')
     stage.amplifier(stage.nodes.p, tap, stage.nodes.out)
@@ -82,16 +79,18 @@ export const nonInvertingUp: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target,
-        form: {
-          kind: 'non-inverting-up',
-          signal: signalEnds(need),
-          source: need.sourceResistance,
-          reference: reference.voltage,
-          referenceResistance: reference.resistance,
-        },
-        dropsOffset: false,
+      sizing: { target, ...anatomyOf(this, need), dropsOffset: false },
+    }
+  },
+  anatomy(need) {
+    if (!need.reference) return null
+    return {
+      form: {
+        kind: 'non-inverting-up',
+        signal: signalEnds(need),
+        source: need.sourceResistance,
+        reference: need.reference.voltage,
+        referenceResistance: need.reference.resistance,
       },
     }
   },
@@ -176,15 +175,17 @@ export const nonInvertingDown: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target,
-        form: {
-          kind: 'non-inverting-down',
-          signal: signalEnds(need),
-          reference: reference.voltage,
-          referenceResistance: reference.resistance,
-        },
-        dropsOffset: false,
+      sizing: { target, ...anatomyOf(this, need), dropsOffset: false },
+    }
+  },
+  anatomy(need) {
+    if (!need.reference) return null
+    return {
+      form: {
+        kind: 'non-inverting-down',
+        signal: signalEnds(need),
+        reference: need.reference.voltage,
+        referenceResistance: need.reference.resistance,
       },
     }
   },

@@ -1,5 +1,5 @@
 import { gainAndOffset, leg, noOffset, ohms, voltsText } from '../equation.ts'
-import { intercept, refuse, slope, type Arrangement, type Need } from '../define.ts'
+import { anatomyOf, intercept, refuse, slope, type Arrangement, type Need } from '../define.ts'
 import { oriented, placeWithOffset } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
 
@@ -28,6 +28,7 @@ export const direct: Arrangement = {
     if (!placed) return landsOutside(need)
     return { ok: true, sizing: { target: placed.target, form: null, dropsOffset: placed.short } }
   },
+  anatomy: () => ({ form: null }),
   build() {
     // Nothing stands between sensor and filter.
   },
@@ -49,6 +50,7 @@ export const follower: Arrangement = {
     if (!placed) return landsOutside(need)
     return { ok: true, sizing: { target: placed.target, form: null, dropsOffset: placed.short } }
   },
+  anatomy: () => ({ form: null }),
   build(stage) {
     stage.amplifier(stage.nodes.p, stage.nodes.out, stage.nodes.out)
   },
@@ -74,13 +76,12 @@ export const attenuator: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target: placed.target,
-        form: { kind: 'attenuator', signal: signalEnds(need), source: need.sourceResistance },
-        dropsOffset: placed.short,
-      },
+      sizing: { target: placed.target, ...anatomyOf(this, need), dropsOffset: placed.short },
     }
   },
+  anatomy: (need) => ({
+    form: { kind: 'attenuator', signal: signalEnds(need), source: need.sourceResistance },
+  }),
   build(stage, values) {
     const tap = stage.node('tap')
     stage.resistor('R1', stage.nodes.p, tap, values.R1)
@@ -133,16 +134,18 @@ export const levelShift: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target,
-        form: {
-          kind: 'level-shift',
-          signal: signalEnds(need),
-          source: need.sourceResistance,
-          reference: reference.voltage,
-          referenceResistance: reference.resistance,
-        },
-        dropsOffset: false,
+      sizing: { target, ...anatomyOf(this, need), dropsOffset: false },
+    }
+  },
+  anatomy(need) {
+    if (!need.reference) return null
+    return {
+      form: {
+        kind: 'level-shift',
+        signal: signalEnds(need),
+        source: need.sourceResistance,
+        reference: need.reference.voltage,
+        referenceResistance: need.reference.resistance,
       },
     }
   },

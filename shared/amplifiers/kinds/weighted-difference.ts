@@ -1,5 +1,5 @@
 import { gainAndOffset, leg, ohms, voltsText } from '../equation.ts'
-import { intercept, refuse, slope, type Arrangement } from '../define.ts'
+import { anatomyOf, intercept, refuse, slope, type Arrangement } from '../define.ts'
 import { oriented } from '../place.ts'
 import { shiftReference, signalEnds, supplyReason } from '../needs.ts'
 
@@ -40,16 +40,18 @@ export const weightedDifference: Arrangement = {
       )
     return {
       ok: true,
-      sizing: {
-        target,
-        form: {
-          kind: 'weighted-difference',
-          signal: signalEnds(need),
-          source: need.sourceResistance,
-          reference: reference.voltage,
-          referenceResistance: reference.resistance,
-        },
-        dropsOffset: false,
+      sizing: { target, ...anatomyOf(this, need), dropsOffset: false },
+    }
+  },
+  anatomy(need) {
+    if (!need.reference) return null
+    return {
+      form: {
+        kind: 'weighted-difference',
+        signal: signalEnds(need),
+        source: need.sourceResistance,
+        reference: need.reference.voltage,
+        referenceResistance: need.reference.resistance,
       },
     }
   },

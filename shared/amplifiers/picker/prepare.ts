@@ -14,7 +14,7 @@ export interface Prepared {
   allows: ((values: readonly number[]) => boolean) | null
   /** True where a person fixed every value. */
   fixed: boolean
-  /** Error of the nearest of n picks, as a fraction of the span: of this order times √n with two free ratios, times n with one. */
+  /** The n-th smallest error is of this order times √n with two free ratios (knobs), times n with one; of the span. */
   grain: number
   knobs: 1 | 2
 }
@@ -37,23 +37,18 @@ export function prepare(
   }
   const { alpha, beta, lines, ideal } = toProblem(form)
   const all: ValueList[] = []
-  let combinations = 1
-  for (const ref of refs) {
-    const list = allowedValues(form, ref, lists[ref])
-    combinations *= list.values.length
-    all.push(list)
-  }
+  for (const ref of refs) all.push(allowedValues(form, ref, lists[ref]))
+  const across = limits.filter((limit) => !isPair(limit, alpha) && !isPair(limit, secondPair(beta)))
+  for (const limit of across) if (!narrow(all, refs, limit)) return null
+  const combinations = all.reduce((product, list) => product * list.values.length, 1)
   if (combinations === 0) return null
   all.push(constantOf(alpha, beta), NOTHING)
   const places = new Places(refs, all, preferred)
 
-  const firstBounds = alpha && boundsOf(limits, alpha.upper, alpha.lower)
+  const firstBounds = boundsOf(limits, alpha)
   const first = alpha ? places.pair(alpha, firstBounds, isPlain(alpha)) : places.nothing()
   const second = places.beta(beta, limits, alpha !== null)
   if (!first || !second) return null
-  const rest = limits.filter(
-    (limit) => !firstBounds?.from.includes(limit) && !second.bounds?.from.includes(limit),
-  )
   return {
     task: {
       slots: places.slots,
@@ -70,9 +65,9 @@ export function prepare(
       second: second.members,
       beta: second.task,
     },
-    allows: rest.length > 0 ? crossCheck(refs, rest) : null,
+    allows: across.length > 0 ? crossCheck(refs, across) : null,
     fixed: refs.every((ref) => lists[ref]?.length === 1),
-    grain: alpha ? GRAIN / Math.sqrt(combinations) : GRAIN / combinations,
+    grain: GRAIN[beta.kind] / combinations ** (alpha ? 0.5 : 1),
     knobs: alpha ? 2 : 1,
   }
 }
@@ -82,10 +77,6 @@ function constantOf(alpha: PairLegs | null, beta: Beta): ValueList {
   if (alpha && typeof alpha.upper === 'number') return toValueList([alpha.upper])
   if (beta.kind === 'pair' && typeof beta.legs.upper === 'number') return toValueList([beta.legs.upper])
   return NOTHING
-}
-
-interface Bounds extends PairBounds {
-  from: readonly PairLimit[]
 }
 
 /** Finds slots by ref and tables by pair. */
@@ -144,26 +135,26 @@ class Places {
     beta: Beta,
     limits: readonly PairLimit[],
     hasFirst: boolean,
-  ): { members: Members; task: BetaTask; bounds: Bounds | null } | null {
+  ): { members: Members; task: BetaTask } | null {
     if (beta.kind === 'shared') {
       const { own, series, divider } = beta
       const members = untabled(this.none, this.slotOf(beta.ref))
-      return { members, task: { kind: 'shared', own, series, divider }, bounds: null }
+      return { members, task: { kind: 'shared', own, series, divider } }
     }
     if (beta.kind === 'loaded') {
-      const bounds = boundsOf(limits, beta.upper, beta.lower)
+      const bounds = boundsOf(limits, beta)
       const found = this.pair({ upper: beta.upper, lower: beta.lower, above: 0, below: 0 }, bounds, false)
-      return found && { members: found.members, task: { kind: 'loaded', bounds }, bounds }
+      return found && { members: found.members, task: { kind: 'loaded', bounds } }
     }
     const { legs, divider, f0, f1 } = beta
-    const bounds = boundsOf(limits, legs.upper, legs.lower)
+    const bounds = boundsOf(limits, legs)
     // Beside a first pair the second is asked thousands of times: its table pays even with a series resistance.
     const found = this.pair(legs, bounds, hasFirst || isPlain(legs))
     if (!found) return null
     const task: BetaTask = found.table
       ? { kind: 'table', table: found.table, divider, f0, f1 }
       : { kind: 'legs', above: legs.above, below: legs.below, divider, f0, f1, bounds }
-    return { members: found.members, task, bounds }
+    return { members: found.members, task }
   }
 
   private slotOf(leg: string | number): number {
@@ -171,8 +162,8 @@ class Places {
   }
 }
 
-/** Natural range of a ratio that picks spread over, with some room: only the first guess depends on it. */
-const GRAIN = 30
+/** Where the first few picks were found to lie; a search that starts elsewhere only takes longer. */
+const GRAIN = { pair: 60, loaded: 60, shared: 12 } as const
 const NOTHING = toValueList([Infinity])
 const FREE = new Float64Array(1)
 
@@ -200,16 +191,55 @@ function allowedValues(form: ValueForm, ref: string, values: readonly number[] |
   return partOf(list, from, to)
 }
 
-function concerns(limit: PairLimit, one: string | number, other: string | number): boolean {
-  return limit.refs.includes(one as string) && limit.refs.includes(other as string)
+/** The second pair, where the search treats it as one. */
+function secondPair(beta: Beta): Pick<PairLegs, 'upper' | 'lower'> | null {
+  return beta.kind === 'pair' ? beta.legs : beta.kind === 'loaded' ? beta : null
+}
+
+function isPair(limit: PairLimit, pair: Pick<PairLegs, 'upper' | 'lower'> | null): boolean {
+  return pair !== null && limit.refs.includes(pair.upper as string) && limit.refs.includes(pair.lower)
+}
+
+/**
+ * Takes out of two lists what no value of the other can make allowed; false where no pair is. A demand across the pairs
+ * of the search is checked pick by pick, which is slow where it excludes all the good ones; this spares most of that.
+ */
+function narrow(all: ValueList[], refs: readonly string[], limit: PairLimit): boolean {
+  const [one, other] = limit.refs.map((ref) => refs.indexOf(ref)) as [number, number]
+  const bounds = merge([limit])
+  const [a, b] = [all[one] as ValueList, all[other] as ValueList]
+  if (!anyAllowed(a, b, bounds)) return false
+  all[one] = feasible(a, b, bounds)
+  all[other] = feasible(b, a, bounds)
+  return true
+}
+
+function feasible(list: ValueList, partners: ValueList, bounds: PairBounds): ValueList {
+  const least = partners.values[0] as number
+  const most = partners.values[partners.values.length - 1] as number
+  let from = 0
+  let to = list.values.length
+  while (
+    from < to &&
+    !pairAllowed(list.values[from] as number, most, { ...bounds, maximumParallel: Infinity })
+  )
+    from++
+  while (
+    to > from &&
+    !pairAllowed(list.values[to - 1] as number, least, { ...bounds, minimumSum: 0, minimumParallel: 0 })
+  )
+    to--
+  return partOf(list, from, to)
 }
 
 /** All demands on one pair together; null where there is none. */
-function boundsOf(limits: readonly PairLimit[], one: string | number, other: string | number): Bounds | null {
+function boundsOf(
+  limits: readonly PairLimit[],
+  pair: Pick<PairLegs, 'upper' | 'lower'> | null,
+): PairBounds | null {
   if (limits.length === 0) return null
-  const from = limits.filter((limit) => concerns(limit, one, other))
-  if (from.length === 0) return null
-  return { ...merge(from), from }
+  const from = limits.filter((limit) => isPair(limit, pair))
+  return from.length > 0 ? merge(from) : null
 }
 
 function merge(limits: readonly PairLimit[]): PairBounds {

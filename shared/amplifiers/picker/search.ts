@@ -287,6 +287,9 @@ export class Search {
     const lowerCosts = slots.costs[second.lowerSlot] as Float64Array
     const smallest = lowers[0] as number
     const largest = lowers[lowers.length - 1] as number
+    // Where a product of 0 and ∞ comes out as no number, nothing is passed over.
+    const fewest = (1 - WIDER) / most
+    const furthest = (1 + WIDER) / least
     for (let member = from; member < to; member++) {
       const above = (firstUppers[upperOf(first, member)] as number) + first.above
       const thevenin = 1 / (1 / above + 1 / (firstLowers[lowerOf(first, member)] as number))
@@ -304,8 +307,8 @@ export class Search {
       for (let i = start; i < uppers.length; i++) {
         const a = uppers[i] as number
         if (a > end) break
-        const nearest = quotient(a, most) * (1 - WIDER) - thevenin * (1 + WIDER)
-        const farthest = least > 0 ? (a / least) * (1 + WIDER) - thevenin * (1 - WIDER) : Infinity
+        const nearest = a * fewest - thevenin * (1 + WIDER)
+        const farthest = a * furthest - thevenin * (1 - WIDER)
         while (bottom < lowers.length && (lowers[bottom] as number) < nearest) bottom++
         for (let j = bottom; j < lowers.length; j++) {
           const b = lowers[j] as number
@@ -379,9 +382,4 @@ function factorBand(limit: number): Pair {
 function memberCost(slots: Slots, members: Members, member: number): number {
   const upper = (slots.costs[members.upperSlot] as Float64Array)[upperOf(members, member)] as number
   return upper + ((slots.costs[members.lowerSlot] as Float64Array)[lowerOf(members, member)] as number)
-}
-
-/** a/b with 0/0 = 0. */
-function quotient(a: number, b: number): number {
-  return a === 0 ? 0 : a / b
 }

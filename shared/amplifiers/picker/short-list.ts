@@ -289,7 +289,9 @@ export class ShortList {
 
   private isLess(one: readonly number[], other: readonly number[]): boolean {
     for (let i = 0; i < this.slots.refs.length; i++) {
-      if (one[i] !== other[i]) return (one[i] as number) < (other[i] as number)
+      // A resistor that is left open saves a part, so it comes before every value.
+      if (one[i] !== other[i])
+        return other[i] !== Infinity && (one[i] === Infinity || (one[i] as number) < (other[i] as number))
     }
     return false
   }

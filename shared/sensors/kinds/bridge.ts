@@ -2,11 +2,13 @@ import { z } from 'zod'
 import type { Fault } from '#shared/design/plan.ts'
 import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
-import { accuracyVariables, alongLine, commonKeys, legResistance, volts } from './common.ts'
+import { accuracyVariables, alongLine, commonKeys, legResistance } from './common.ts'
 import { defineSensor, type SensorContext, type SensorSource } from './define.ts'
 
+const excitationVoltage = () => numberField('Excitation voltage', 'V', { above: 0, max: 100 })
+
 const excitationKeys = z.strictObject({
-  voltage: numberField('Excitation voltage', 'V', { above: 0, max: 100 }).optional(),
+  voltage: excitationVoltage().optional(),
   tolerance: fraction('Excitation tolerance').default(0),
   drift: nonNegative('Excitation drift', '1/K', 0.01).default(0),
   resistance: nonNegative('Resistance of the excitation', 'Ω').default(0),
@@ -17,7 +19,7 @@ const excitationKeys = z.strictObject({
 const schema = z.strictObject({
   kind: z.literal('bridge'),
   ...commonKeys,
-  excitation: z.union([volts('Excitation voltage'), excitationKeys]),
+  excitation: z.union([excitationVoltage(), excitationKeys]),
   sensitivity: positive('Sensitivity', 'V/V', 1),
   zeroAt: numberField('Measurand at zero output', '').default(0),
   ratedAt: numberField('Measurand at rated output', '').optional(),
@@ -112,12 +114,6 @@ export const bridge = defineSensor({
             accepted: `a measurand, rated output and sensitivity that stay below ${LARGEST_RATIO} V/V`,
           })
     const given = sensor.excitation
-    if (typeof given === 'number' && given <= 0)
-      faults.push({
-        path: 'excitation',
-        reason: 'the excitation is not above zero',
-        accepted: 'a number above 0, in V',
-      })
     if (typeof given === 'object' && given.voltage === undefined && !given.same)
       faults.push({
         path: 'excitation.voltage',

@@ -91,19 +91,19 @@ describe('a note on A4', () => {
     expect(info).toContain('Title:           Flow velocity – Design note QH-0412')
     expect(info).toContain('Author:          I. Sorrelby')
     expect(info).toContain('CreationDate:    2026-04-17T')
-    expect(pdf.toString('latin1')).toContain('/ModificationDate (D:20260417093000Z)')
     expect(info).toMatch(/Page size: +595\.28 x 841\.89/)
-    expect(pdf.toString('latin1')).toContain('/Lang (en)')
+    expect(/Lang \((\w+)\)/.exec(pdf.toString('latin1'))?.[1]).toBe('en')
   })
 
   it('has an outline of its sections and links to them', () => {
     const raw = pdf.toString('latin1')
-    expect(raw).toMatch(/\/Outlines \d+ 0 R/)
+    const titles = [...raw.matchAll(/\/Title \(([^)]*)\)/g)].map((match) => match[1])
+    expect(/\/Outlines (\d+) 0 R/.exec(raw)?.[1]).toBeDefined()
     for (const title of ['Equations of the arrangement', 'Netlist', 'Record', 'Figure 1. Levels'])
-      expect(raw).toContain(`/Title (${title})`)
-    for (const { title } of buildNote(input).groups) expect(raw).toContain(`/Title (${title})`)
+      expect(titles).toContain(title)
+    for (const { title } of buildNote(input).groups) expect(titles).toContain(title)
     for (const { id } of buildNote(input).groups.flatMap((group) => group.sections))
-      expect(raw).toContain(`(${id})`)
+      expect(raw.includes(`(${id})`), id).toBe(true)
   })
 
   it('embeds subsets of its own fonts and no other', () => {
@@ -142,7 +142,7 @@ describe('a note of a plan that cannot be built', () => {
     expectAllPrinted(pdf, input)
     const first = sheets[0] ?? ''
     expect(first.indexOf('No arrangement can do this')).toBeLessThan(first.indexOf('Asked for'))
-    expect(sheets.join('')).not.toMatch(/Table 1\.|Netlist/)
+    expect(sheets.join('')).not.toMatch(/Parts that set the answer|Signal chain|SPICE/)
   })
 })
 

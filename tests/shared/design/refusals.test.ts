@@ -380,8 +380,8 @@ const references: Row[] = [
     'an excitation of zero',
     buildDesign({ sensor: { ...bridge, kind: 'bridge', excitation: 0 } }),
     'sensor.excitation',
-    /not above zero/,
-    /above 0, in V/,
+    /excitation voltage is 0/,
+    /above 0 up to 100, in V/,
   ],
   [
     'a differential signal without its common mode',

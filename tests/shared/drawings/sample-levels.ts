@@ -48,20 +48,53 @@ export function sampleLevel(given: Given): Level {
 
 /** The chain of a stilling-well gauge as a draft that clips: the figures of the interface drawings. */
 export const gauge: Level[] = [
-  sampleLevel({ node: 'sensor', title: 'Sensor output', nominal: [-0.0002, 0.0104], region: [-0.001, 0.012], spread: 2e-5 }),
-  sampleLevel({ node: 'S1', title: 'After S1', nominal: [0.38, 1.448], region: [0.15, 4.85], spread: 0.003, gain: 100.8 }),
-  sampleLevel({ node: 'S2', title: 'After S2', nominal: [0.228, 4.235], region: [0.1, 4.9], spread: 0.02, gain: 3.75 }),
-  sampleLevel({ node: 'adc', title: 'Converter input', nominal: [0.228, 4.235], region: [0, 4.096], spread: 0.02, gain: 1 }),
+  sampleLevel({
+    node: 'sensor',
+    title: 'Sensor output',
+    nominal: [-0.0002, 0.0104],
+    region: [-0.001, 0.012],
+    spread: 2e-5,
+  }),
+  sampleLevel({
+    node: 'S1',
+    title: 'After S1',
+    nominal: [0.38, 1.448],
+    region: [0.15, 4.85],
+    spread: 0.003,
+    gain: 100.8,
+  }),
+  sampleLevel({
+    node: 'S2',
+    title: 'After S2',
+    nominal: [0.228, 4.235],
+    region: [0.1, 4.9],
+    spread: 0.02,
+    gain: 3.75,
+  }),
+  sampleLevel({
+    node: 'adc',
+    title: 'Converter input',
+    nominal: [0.228, 4.235],
+    region: [0, 4.096],
+    spread: 0.03,
+    gain: 1,
+  }),
 ]
 
 /** An inverting chain. */
 export const inverted: Level[] = [
-  sampleLevel({ node: 'sensor', title: 'Sensor output', nominal: [-0.35, 0.35], region: [-0.7, 2.5], span: [-2.5, 2.5] }),
+  sampleLevel({
+    node: 'sensor',
+    title: 'Sensor output',
+    nominal: [-0.35, 0.35],
+    region: [-0.7, 2.5],
+    span: [-2.5, 2.5],
+  }),
   sampleLevel({
     node: 'S1',
     title: 'After S1',
     nominal: [2.4, 0.1],
-    region: [0.02, 4.98],
+    region: [-0.1, 4.98],
     span: [-2.5, 2.5],
     spread: 0.01,
     gain: -3.2857142857,

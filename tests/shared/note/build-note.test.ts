@@ -158,6 +158,11 @@ describe('a plan that cannot be built', () => {
     expect(note.first.purpose).toMatch(/^Asked for:/)
   })
 
+  it('numbers its tables from 1', () => {
+    expect(section(note, 'candidates')?.title).toBe('Table 1. Candidates considered')
+    expect(section(sample(), 'picks')?.title).toMatch(/^Table 2/)
+  })
+
   it('has no parts, no answers and no schematic', () => {
     expect(note.first.parts).toBeNull()
     expect(note.first.schematic).toBeNull()
@@ -188,9 +193,9 @@ describe('later sheets', () => {
       'assumptions',
       'cautions',
       'candidates',
+      'record',
       'netlist',
       'values',
-      'record',
     ])
   })
 

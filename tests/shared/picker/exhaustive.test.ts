@@ -40,7 +40,7 @@ function compare(request: PickRequest): 'same' | 'none' {
   return 'same'
 }
 
-describe.each(Object.keys(formMakers))('%s', (name) => {
+describe.each(Object.keys(formMakers))('%s', { timeout: 60_000 }, (name) => {
   const make = formMakers[name] as (typeof formMakers)[string]
   const refs = formRefs(make(seeded(1))).length
   const rounds = refs < 4 ? 120 : 60

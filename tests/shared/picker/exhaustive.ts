@@ -252,7 +252,7 @@ function byCost(refs: readonly string[]): (a: Pick, b: Pick) => number {
   return (a, b) => {
     if (a.cost !== b.cost) return a.cost - b.cost
     for (const ref of refs) {
-      const order = compare(a.values[ref] ?? Infinity, b.values[ref] ?? Infinity)
+      const order = compare(a.values[ref] ?? -1, b.values[ref] ?? -1)
       if (order !== 0) return order
     }
     return 0

@@ -139,10 +139,7 @@ function ChoiceField({
   // An absent choice with a default shows the default; one without can also be left to itself.
   const value = typeof field.value === 'string' ? field.value : (preset ?? '')
   const listed = options.map((option) => ({ value: option, label: choiceLabel(option) }))
-  const shown =
-    preset === null
-      ? [{ value: '', label: absent ?? (spec.required ? 'choose' : 'not stated') }, ...listed]
-      : listed
+  const shown = preset === null ? [{ value: '', label: absent ?? absentWords(spec) }, ...listed] : listed
   return (
     <SelectField
       id={field.id}
@@ -157,6 +154,12 @@ function ChoiceField({
       onChange={(chosen) => field.choose(chosen === '' ? undefined : chosen, name)}
     />
   )
+}
+
+/** What it means that nothing is chosen. */
+function absentWords(spec: FieldSpec): string {
+  if (spec.path.endsWith('.same')) return 'a source of its own'
+  return spec.required ? 'choose' : 'not stated'
 }
 
 function FlagField({ path, label, help }: SchemaFieldProps) {

@@ -20,7 +20,14 @@ export function useField(path: string) {
     error: fault ? faultText(fault) : undefined,
     disabled: readOnly !== null,
     type: (value: unknown, text: string, label: string) =>
-      dispatch({ type: 'type', path, value, text, label }),
+      dispatch({
+        type: 'type',
+        path,
+        value,
+        text,
+        label,
+        also: companionsOf(path, value, state.document),
+      }),
     misread: (text: string, reason: string, label: string) =>
       dispatch({ type: 'misread', path, text, reason, label }),
     choose: (value: unknown, label: string) =>

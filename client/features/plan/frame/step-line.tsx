@@ -1,13 +1,14 @@
 import { Link } from 'react-router-dom'
 import { TickMark } from '#client/components/marks.tsx'
 import { usePlanner } from '../planner-context.tsx'
+import { isAwaited } from '../session/plan-session.ts'
 import { answerSteps } from '../words/step-answers.ts'
 import { stepNumber, steps, stepTitle } from '../words/steps.ts'
 
 /** The eight steps with what each has answered so far. On a narrow page only the present one, with the list folded. */
 export function StepLine() {
-  const { state, findings, candidate, step, stepHref } = usePlanner()
-  const answers = answerSteps({ document: state.document, findings, candidate })
+  const { state, planning, findings, candidate, step, stepHref } = usePlanner()
+  const answers = answerSteps({ document: state.document, findings, candidate, awaited: isAwaited(planning) })
   const list = (
     <ol className="step-line">
       {answers.map((answer) => (

@@ -55,7 +55,7 @@ function StageValue({ path, label, unit, placeholder, also }: StageValueProps) {
       label={label}
       layout="inline"
       unit={unit}
-      width={9}
+      width={14}
       value={numberAt(state.document, path)}
       disabled={readOnly !== null}
       {...(placeholder ? { placeholder } : {})}

@@ -22,7 +22,7 @@ export const toDraftPath = (path: string): string => path.replace(/\[(\d+)\]/g, 
 export function splitHeadline(sentence: string): { title: string; text: string } {
   const text = sentence.trim()
   const first = /^(.+?)\.[ \n]+(?=[^a-z ])/.exec(text)
-  if (first?.[1] && first[1].length <= 72) return { title: first[1], text: text.slice(first[0].length) }
+  if (first?.[1] && first[1].length <= 96) return { title: first[1], text: text.slice(first[0].length) }
   const head = /^([^:.]{4,60}): /.exec(text)
   if (head?.[1]) {
     const rest = text.slice(head[0].length)

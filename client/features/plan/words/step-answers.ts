@@ -11,25 +11,32 @@ export interface StepAnswer {
   id: StepId
   text: string
   /** `over` and `open` ask for work; `done` is complete. */
-  state: 'done' | 'over' | 'open' | 'tight'
+  state: 'done' | 'over' | 'open' | 'tight' | 'awaited'
 }
 
 interface Situation {
   document: DraftDocument
   findings: readonly ShownFinding[]
   candidate: Candidate | null
+  /** The first plan is still being made. */
+  awaited: boolean
 }
+
+/** Steps whose answer is the plan's. */
+const planned = new Set<StepId>(['stages', 'filter', 'errors'])
 
 export function answerSteps(situation: Situation): StepAnswer[] {
   return steps.map(({ id }) => {
     const own = pressing(situation.findings.filter((finding) => finding.step === id))
     const over = own.filter(({ severity }) => severity === 'over')
     const open = own.filter(({ severity }) => severity === 'open')
+    if (situation.awaited && (planned.has(id) || id === 'review'))
+      return { id, state: 'awaited', text: 'being planned' }
     if (id === 'review') return reviewAnswer(situation)
     if (over.length > 0) return { id, state: 'over', text: counted(over.length, 'to put right') }
     if (open.length > 0) return { id, state: 'open', text: counted(open.length, 'open') }
     const text = words[id](situation.document, situation.candidate)
-    if (text === null) return { id, state: 'open', text: 'open' }
+    if (text === null) return { id, state: 'open', text: planned.has(id) ? 'needs an arrangement' : 'open' }
     return { id, state: own.length > 0 ? 'tight' : 'done', text }
   })
 }
@@ -67,18 +74,19 @@ const words: Record<Exclude<StepId, 'review'>, Words> = {
     const bits = numberAt(document, 'converter.bits')
     return range === null || bits === null ? range : `${range}, ${formatNumber(bits)} bit`
   },
-  stages: (_, candidate) => (candidate ? candidate.title : 'no arrangement'),
+  stages: (_, candidate) => candidate?.title ?? null,
   parts(document) {
     const series = textAt(document, 'parts.resistors.series') || 'E96'
     return `${series}, ${percent(numberAt(document, 'parts.resistors.tolerance') ?? 0.001)}`
   },
-  filter: (_, candidate) =>
-    candidate?.filter?.kind === 'rc'
-      ? `corner ${formatQuantity(candidate.filter.corner, 'Hz', { digits: 3 })}`
-      : 'none',
+  filter(_, candidate) {
+    if (!candidate?.filter) return null
+    const { kind, corner } = candidate.filter
+    return kind === 'rc' ? `corner ${formatQuantity(corner, 'Hz', { digits: 3 })}` : 'none'
+  },
   errors(document, candidate) {
     const error = candidate?.realised?.endpointErrorQuantity
-    if (!error) return 'not known'
+    if (!error) return null
     const unit = textAt(document, 'sensor.quantity.unit')
     return `ends off by ${upward(Math.max(Math.abs(error.low), Math.abs(error.high)), unit)}`
   },
