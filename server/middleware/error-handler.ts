@@ -28,6 +28,8 @@ function known(error: unknown): AppError | null {
   const foreign = (typeof error === 'object' && error !== null ? error : {}) as ForeignError
   const fromParser = foreign.type === undefined ? undefined : parserErrors[foreign.type]
   if (fromParser) return fromParser()
+  if (/^(Z_|ERR_BROTLI|ERR__ERROR_FORMAT|ERR_.*BROTLI)/.test(foreign.code ?? ''))
+    return new AppError('bad_request', 'The body is not validly compressed.')
   if (error instanceof URIError)
     return new AppError('bad_request', 'The address holds a broken percent sign.')
   const driver = (error as { driverError?: ForeignError } | null)?.driverError

@@ -15,8 +15,8 @@ export interface Need {
   floating: boolean
   /** Output wanted at quantity.low and quantity.high. An arrangement that inverts gives them crosswise. */
   target: Ends
-  /** Shift reference: voltage, its output resistance, whether it may be loaded. */
-  reference: { voltage: number; resistance: number } | null
+  /** Shift reference: voltage, its output resistance, whether it may stand at a reference leg as it is. */
+  reference: { voltage: number; resistance: number; buffered: boolean } | null
   rails: { positive: number; negative: number }
   parts: Design['parts']
   /** Level at the reference leg asked for by a person; null: chosen. */

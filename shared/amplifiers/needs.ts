@@ -33,7 +33,7 @@ export function supplyFits(name: string, supply: number, minimum: number, maximu
 }
 
 /** The reference that makes the offset, or why there is none. */
-export function shiftReference(need: Need): { voltage: number; resistance: number } | { reason: Reason } {
+export function shiftReference(need: Need): NonNullable<Need['reference']> | { reason: Reason } {
   return (
     need.reference ?? {
       reason: {

@@ -1,20 +1,12 @@
 import { z } from 'zod'
+import { isCleanText } from '#shared/units/clean-text.ts'
+
+export { isCleanText } from '#shared/units/clean-text.ts'
 
 /** Identifier of a stored thing: lower-case letters, digits and hyphens. */
 export const idSchema = z
   .string()
   .regex(/^[a-z0-9](?:[a-z0-9-]{1,38})[a-z0-9]$/, 'an identifier of this application')
-
-/**
- * Characters that have no place in a name: control characters, direction marks that make text read as another, and
- * halves of a surrogate pair.
- */
-const unwanted = /[\p{Cc}\p{Cs}\u061c\u200e\u200f\u2028\u2029\u202a-\u202e\u2066-\u2069\ufeff]/u
-
-/** True for text without control characters, direction overrides and lone surrogates. */
-export function isCleanText(text: string): boolean {
-  return !unwanted.test(text)
-}
 
 interface TextOptions {
   min?: number

@@ -1,3 +1,4 @@
+import { computeLoopGain } from '#shared/analysis/ac.ts'
 import { solveDc } from '#shared/analysis/dc.ts'
 import {
   computeExtremes,
@@ -9,7 +10,8 @@ import type { Pin } from '#shared/amplifiers/stage-builder.ts'
 import { buildChain, sensorEnds, type Chain, type ChainSpec } from '#shared/design/chain.ts'
 import type { Ends } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
-import type { NetworkElement } from '#shared/network/types.ts'
+import { temperatureSpan } from '#shared/design/references.ts'
+import type { Amplifier, NetworkElement, Resistor } from '#shared/network/types.ts'
 
 /**
  * Runs the exact bounds of a chain (numerics: vertices of the resistors, sources in closed form) at both ends of the
@@ -36,6 +38,14 @@ export interface WatchedPin {
   worstClipsAt: Ends<number | null>
 }
 
+/** A part driven past a rating: power (W), voltage (V), output current (A), or a gain below the smallest stable one. */
+export interface Stress {
+  ref: string
+  kind: 'power' | 'voltage' | 'current' | 'gain'
+  value: number
+  limit: number
+}
+
 export type Place = 'low' | 'high' | 'beyondLow' | 'beyondHigh'
 
 export interface Assessment {
@@ -53,6 +63,8 @@ export interface Assessment {
   y: { nominal: Ends; worst: Record<'low' | 'high', Ends> }
   /** Current drawn from (+) the shift reference and each excitation, bounds over all places, A. */
   loads: { ref: string; low: number; high: number; nominal: number }[]
+  /** Parts loaded beyond their ratings; only with clips. */
+  stresses: Stress[]
   bound: { vertices: number; resistors: number; proven: boolean; keepsSign: boolean }
 }
 
@@ -110,6 +122,7 @@ export function assess(design: Design, spec: ChainSpec, depth: AssessDepth = 'ev
     })),
     y: firmwareView(low, read),
     loads: loadsOf(low, places, read),
+    stresses: whole ? stressesOf(design, low, places, read) : [],
     bound: {
       vertices: one?.vertices ?? 0,
       resistors: one?.resistors ?? 0,
@@ -274,11 +287,50 @@ function watchMargins(design: Design, chain: Chain): ExtremesOutput[] {
 function watchVoltages(chain: Chain): ExtremesOutput[] {
   return [
     ...chain.pins.map((pin, i) => ({ id: `pin:${i}`, nodes: onNode(pin.node) })),
+    ...ratedResistors(chain).map((r) => ({
+      id: `across:${r.ref}`,
+      nodes: { ...onNode(r.a), ...onNode(r.b, -1) },
+    })),
+    ...plainAmplifiers(chain).map((u) => ({ id: `drive:${u.ref}`, nodes: {}, currents: { [u.ref]: 1 } })),
     ...chain.levels.map((level) => ({
       id: `level:${level.node}`,
       nodes: { ...onNode(level.p), ...(level.n ? onNode(level.n, -1) : {}) },
     })),
   ]
+}
+
+const ratedResistors = (chain: Chain): Resistor[] =>
+  chain.network.elements.flatMap((e) => (e.kind === 'resistor' && !e.fixed ? [e] : []))
+
+const plainAmplifiers = (chain: Chain): Amplifier[] =>
+  chain.network.elements.flatMap((e) => (e.kind === 'amplifier' && !e.macro ? [e] : []))
+
+/** Ratings of resistors are used to half (common practice); amplifiers to their own limits. */
+const DERATING = 0.5
+
+function stressesOf(design: Design, chain: Chain, places: Place[], read: Read): Stress[] {
+  const { power, voltage } = design.parts.resistors
+  const most = (id: string) =>
+    Math.max(...places.flatMap((p) => [Math.abs(read(p, id).low), Math.abs(read(p, id).high)]))
+  const list: Stress[] = []
+  for (const r of ratedResistors(chain)) {
+    const volts = most(`across:${r.ref}`)
+    const smallest = r.value * (1 - Math.min(r.tolerance + r.drift * temperatureSpan(design), 0.99))
+    const watts = volts ** 2 / smallest
+    if (volts > voltage * DERATING)
+      list.push({ ref: r.ref, kind: 'voltage', value: volts, limit: voltage * DERATING })
+    if (watts > power * DERATING)
+      list.push({ ref: r.ref, kind: 'power', value: watts, limit: power * DERATING })
+  }
+  for (const u of plainAmplifiers(chain)) {
+    const amps = most(`drive:${u.ref}`)
+    if (amps > u.part.outputCurrent)
+      list.push({ ref: u.ref, kind: 'current', value: amps, limit: u.part.outputCurrent })
+    const noiseGain = u.part.a0 / computeLoopGain(chain.network, u.ref, 0).re
+    if (u.part.minimumGain > 1 && noiseGain < u.part.minimumGain)
+      list.push({ ref: u.ref, kind: 'gain', value: noiseGain, limit: u.part.minimumGain })
+  }
+  return list
 }
 
 const loadRefs = (chain: Chain): string[] =>

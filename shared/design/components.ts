@@ -1,6 +1,6 @@
 import { kindOf as elementKind } from '#shared/network/elements/index.ts'
 import type { Component } from './plan.ts'
-import type { Trial } from './plan-stage.ts'
+import type { Trial } from './settle.ts'
 import type { Design } from './schema.ts'
 
 /** Parts list of a trial, in the order of the network: what is bought, and with `fixed` what belongs to other parts. */

@@ -1,4 +1,4 @@
-import type { WatchedPin } from '#shared/budget/assess.ts'
+import type { Stress, WatchedPin } from '#shared/budget/assess.ts'
 import { spanMargin, stateOf, wholeMargin } from '#shared/budget/headroom.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import type { Candidate, Finding, Load, ModelEntry, OverVoltage, Reason } from './plan.ts'
@@ -7,7 +7,7 @@ import type { Design } from './schema.ts'
 /** Sentences made from codes and numbers, in this one place. Figures are rounded to the side that flatters nothing. */
 
 const volts = (v: number) => formatQuantity(v, 'V', { digits: 4 })
-const short = (v: number) => formatQuantity(v, 'V', { digits: 2, rounding: 'up' })
+const short = (v: number) => formatQuantity(v, 'V', { digits: 3, rounding: 'up' })
 
 /** A place of the measurand: rounded towards the span, never printed wider than it is. */
 function measurand(design: Design, q: number): string {
@@ -22,17 +22,21 @@ export function clipReason(design: Design, pin: WatchedPin): Reason {
   const atLow = margin.low <= margin.high
   const by = -Math.min(margin.low, margin.high)
   const limit = atLow ? pin.allowed.low : pin.allowed.high
-  const goes = atLow ? limit - by : limit + by
+  const nominal = atLow
+    ? Math.min(...Object.values(pin.nominalMargin).map((m) => m.low))
+    : Math.min(...Object.values(pin.nominalMargin).map((m) => m.high))
+  // With nominal rails and reference; the worst board is judged against its own.
+  const goes = atLow ? limit + nominal : limit - nominal
   const numbers = { goes, limit, short: by }
+  const worst = nominal < 0 ? 'the worst board' : 'yet the worst board'
   if (pin.role === 'converter')
     return {
       code: atLow ? 'converter-low' : 'converter-high',
-      text: `The worst board would bring the converter input to ${volts(goes)}, ${short(by)} ${atLow ? 'below' : 'above'} its range: keep a wider guard band or take closer resistors.`,
+      text: `The converter input would go to ${volts(goes)} on the nominal board; ${worst} leaves its range by ${short(by)}: keep a wider guard band or take closer parts.`,
       numbers,
     }
   const needsNegative = atLow && goes < design.rails.negative + 1e-9 && design.rails.negative >= 0
   const word = pin.role === 'input' ? 'input' : pin.role === 'internal' ? 'internal' : 'swing'
-  const rail = atLow ? 'negative' : 'positive'
   const cure = needsNegative
     ? `needs a negative rail: `
     : atLow
@@ -41,10 +45,24 @@ export function clipReason(design: Design, pin: WatchedPin): Reason {
   return {
     code: `${word}-${atLow ? 'low' : 'high'}`,
     text: capital(
-      `${cure}${pin.name} would go to ${volts(goes)}; with this ${rail} rail it is linear only ${atLow ? 'down' : 'up'} to ${volts(limit)}, short by ${short(by)}.`,
+      `${cure}${pin.name} would go to ${volts(goes)}; it is linear only ${atLow ? 'down' : 'up'} to ${volts(limit)}, and ${worst} is short by ${short(by)}.`,
     ),
     numbers,
   }
+}
+
+/** Why a part cannot stand what is asked of it. */
+export function stressReasons(stress: Stress): Reason[] {
+  const { ref, kind, value, limit } = stress
+  const worst = (unit: string) => formatQuantity(value, unit, { digits: 3, rounding: 'up' })
+  const most = (unit: string) => formatQuantity(limit, unit, { digits: 3, rounding: 'down' })
+  const texts: Record<Stress['kind'], string> = {
+    power: `${ref} would dissipate ${worst('W')}; at half its rating it takes ${most('W')}. Take larger resistors or a larger rating.`,
+    voltage: `${ref} would stand at ${worst('V')}; at half its rating it takes ${most('V')}. Divide the voltage over several resistors or take a higher rating.`,
+    current: `${ref} would have to drive ${worst('A')}; it drives ${most('A')}. Take larger resistors or a stronger amplifier.`,
+    gain: `${ref} is stable from a gain of ${most('')} on; its noise gain here is ${formatQuantity(value, '', { digits: 3 })}. Take an amplifier that is stable at this gain.`,
+  }
+  return [{ code: `stress-${kind}`, text: texts[kind], numbers: { value, limit } }]
 }
 
 const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)
@@ -191,6 +209,35 @@ function choiceFindings(design: Design, candidate: Candidate): Finding[] {
         `choose.values.${ref}`,
         `${ref} is fixed, but this arrangement has no such part: it has no effect.`,
       )
+  const stages = choose.stages ?? []
+  const two = (candidate.stages?.length ?? 1) > 1
+  const levelled = candidate.components?.some((c) => c.stage === 'level') ?? false
+  for (const stage of stages) {
+    const path = `choose.stages.${stage.ref}`
+    if (stage.ref === 'S2' && !two)
+      info('unused-choice', path, 'The chain has one stage: what is chosen for S2 has no effect.')
+    else if (stage.gain !== undefined && !two)
+      info(
+        'unused-choice',
+        path,
+        'With one stage the gain follows from the spans: the gain chosen for it has no effect.',
+      )
+    if (stage.reference !== undefined && !(stage.ref === 'S1' && levelled))
+      info(
+        'unused-choice',
+        path,
+        `${stage.ref} has no reference leg with a level of its own: the level chosen for it has no effect.`,
+      )
+  }
+  if (design.parts.capacitors.dielectric === 'X7R' && candidate.filter?.kind === 'rc')
+    list.push({
+      code: 'class-2-capacitor',
+      severity: 'caution',
+      place: 'C9',
+      path: 'parts.capacitors.dielectric',
+      text: 'C9 is a class 2 ceramic: its value falls with voltage, temperature and age. Take C0G or film in a filter.',
+      numbers: {},
+    })
   const count = candidate.picks?.length ?? 0
   if (choose.pick !== undefined && count > 0 && choose.pick >= count)
     info(

@@ -14,14 +14,9 @@ import { buildChain } from './chain.ts'
 import { toCode } from './codes.ts'
 import { componentsOf } from './components.ts'
 import { findingsFor } from './findings.ts'
-import {
-  arrangementsFor,
-  requirementOf,
-  targetFor,
-  trySingle,
-  type Trial,
-  type TrialResult,
-} from './plan-stage.ts'
+import { arrangementsFor, trySingle } from './plan-stage.ts'
+import { requirementOf } from './requirement.ts'
+import { reasonsAgainst, targetFor, type Trial, type TrialResult } from './settle.ts'
 import { askedArrangement } from './asked.ts'
 import { splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
 import type { Candidate, Ends, Plan, Realised } from './plan.ts'
@@ -54,7 +49,9 @@ function planRead(design: Design, designHash: string): Plan {
     .map((result) => ({ result, rank: result.ok ? rankTrial(design, result.trial) : null }))
     .sort((a, b) => order(a) - order(b))
   const asked = askedArrangement(design)
-  const candidates = ranked.map(({ result, rank }) => toCandidate(design, result, rank, lsb, asked))
+  const candidates = ranked
+    .map(({ result, rank }) => toCandidate(design, result, rank, lsb, asked))
+    .sort((a, b) => Number(b.feasible) - Number(a.feasible))
   const askedAt = asked === undefined ? -1 : candidates.findIndex((c) => c.arrangement === asked)
   const firstFeasible = candidates.findIndex((c) => c.feasible)
   const chosen = askedAt >= 0 ? askedAt : firstFeasible >= 0 ? firstFeasible : null
@@ -170,7 +167,11 @@ function toCandidate(
       reasons: result.ok ? result.trial.reasons : result.reasons,
     }
   const { trial } = result
-  const feasible = trial.reasons.length === 0
+  const settled = trial.reasons.length === 0
+  const wanted = settled || trial.id === asked
+  const assessment = wanted ? assess(design, trial.spec, 'with-clips') : trial.assessment
+  // What every board does decides, whatever the search for a target ended on.
+  const reasons = wanted ? reasonsAgainst(design, assessment) : trial.reasons
   const head: Candidate = {
     arrangement: trial.id,
     ...(trial.stages.length > 1
@@ -183,16 +184,16 @@ function toCandidate(
         }
       : {}),
     title: trial.title,
-    feasible,
-    reasons: trial.reasons,
+    feasible: reasons.length === 0,
+    reasons,
     ranking: rank,
     target: trial.target,
     guard: trial.guard,
   }
   // Someone who asks for an arrangement sees what it does even where it clips.
-  if (!feasible && trial.id !== asked) return head
-  const whole = { ...trial, assessment: assess(design, trial.spec, 'with-clips') }
-  return { ...head, ...details(design, whole, lsb) }
+  return reasons.length === 0 || trial.id === asked
+    ? { ...head, ...details(design, { ...trial, assessment, reasons }, lsb) }
+    : head
 }
 
 const stageGain = (s: Trial['stages'][number]): number =>
@@ -245,7 +246,8 @@ function realise(design: Design, trial: Trial, lsb: number): Realised {
   }
   const { signal } = requirementOf(design)
   const gain = (y.nominal.high - y.nominal.low) / (signal.high - signal.low)
-  const goal = stages[stages.length - 1]?.sized.sizing.target ?? trial.target
+  const aimed = stages[stages.length - 1]?.sized.sizing.target
+  const goal = aimed ? { low: aimed.low * trial.loading, high: aimed.high * trial.loading } : trial.target
   const error = { low: y.nominal.low - goal.low, high: y.nominal.high - goal.high }
   const { quantity } = design.sensor
   const perVolt = (quantity.high - quantity.low) / (y.nominal.high - y.nominal.low)

@@ -5,7 +5,9 @@ import { oriented } from '#shared/amplifiers/place.ts'
 import type { Ends } from './plan.ts'
 import type { Design } from './schema.ts'
 import { askedArrangement } from './asked.ts'
-import { arrangementsFor, requirementOf, settleChain, sizeOne, type TrialResult } from './plan-stage.ts'
+import { arrangementsFor, sizeOne } from './plan-stage.ts'
+import { requirementOf } from './requirement.ts'
+import { settleChain, type TrialResult } from './settle.ts'
 
 /** Above this total gain a split can keep more loop gain in each stage. */
 const LARGE_GAIN = 20

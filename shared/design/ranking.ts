@@ -1,6 +1,6 @@
 import { stateOf } from '#shared/budget/headroom.ts'
 import type { Candidate } from './plan.ts'
-import type { Trial } from './plan-stage.ts'
+import type { Trial } from './settle.ts'
 import type { Design } from './schema.ts'
 
 /** What each thing costs in the ranking, in units of one resistor. One bit of resolution weighs as much as 20. */
@@ -11,7 +11,7 @@ export const RANKING = {
   bitLost: 20,
   tightPin: 2,
   /** Per per cent of the span by which an end point spreads over all boards. */
-  spreadPercent: 2,
+  spreadPercent: 3.5,
   inverted: 1,
 } as const
 

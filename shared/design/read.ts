@@ -137,6 +137,8 @@ function acceptedOf(issue: Issue): string {
 }
 
 const show = (value: unknown): string => {
+  if (Array.isArray(value)) return 'a list'
+  if (typeof value === 'object' && value !== null) return 'an object'
   const text = JSON.stringify(value) ?? String(value)
   return text.length > 40 ? `${text.slice(0, 37)}…` : text
 }

@@ -8,6 +8,8 @@ export interface ResolvedReference {
   resistance: number
   source: number
   sink: number
+  /** May stand at a reference leg as it is. */
+  buffered: boolean
   /** The uncertain quantity that moves it: two uses of one reference share it. */
   variable: string
 }
@@ -41,6 +43,7 @@ export function resolveReferences(design: Design): References {
       resistance: given.outputResistance,
       source: given.source,
       sink: given.sink,
+      buffered: given.buffered,
       variable: rail ? 'positiveRail' : own,
     }
   }

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { sensorSchema } from '#shared/sensors/index.ts'
-import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
+import { fraction, lineField, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 
 /**
  * The design file `spandrel-design/1`: what is wanted. This schema is its only definition; `docs/reference` is
@@ -118,7 +118,7 @@ const table = (label: string, unit: string) =>
     .max(20)
 
 export const amplifierSchema = z.strictObject({
-  name: z.string().min(1).max(80).default('rail-to-rail amplifier, 10 MHz class'),
+  name: lineField('Name of the part', 1, 80).default('rail-to-rail amplifier, 10 MHz class'),
   gbw: positive('Gain-bandwidth product', 'Hz').default(1e7),
   a0: numberField('Open-loop gain', 'V/V', { min: 10, max: 1e12 }).default(1e6),
   phaseMargin: numberField('Phase margin', '°', { above: 0, max: 90 }).default(60),
@@ -168,7 +168,7 @@ export const amplifierSchema = z.strictObject({
 })
 
 export const instrumentationSchema = z.strictObject({
-  name: z.string().min(1).max(80).default('integrated instrumentation amplifier, 1 MHz class'),
+  name: lineField('Name of the part', 1, 80).default('integrated instrumentation amplifier, 1 MHz class'),
   k: positive('Gain constant', 'Ω').default(50000),
   gainMinimum: numberField('Smallest gain', 'V/V', { min: 1 }).default(1),
   gainMaximum: numberField('Largest gain', 'V/V', { min: 1 }).default(1000),
@@ -251,7 +251,7 @@ const chooseSchema = z.strictObject({
 
 export const designSchema = z.strictObject({
   format: z.literal('spandrel-design/1'),
-  name: z.string().trim().min(1).max(120),
+  name: lineField('Name of the design', 1, 120),
   sensor: sensorSchema,
   converter: converterSchema,
   rails: railsSchema,

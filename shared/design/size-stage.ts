@@ -10,6 +10,7 @@ import {
 } from '#shared/amplifiers/picker/index.ts'
 import { standardValues } from '#shared/parts/series.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
+import { askedArrangement } from './asked.ts'
 import type { PickEntry, Reason } from './plan.ts'
 import type { Design } from './schema.ts'
 
@@ -29,7 +30,19 @@ export interface SizedStage {
 
 export type SizeResult = { ok: true; sized: SizedStage } | { ok: false; reason: Reason }
 
-/** Input resistors of a difference amplifier are at least this many times the source resistance (common practice). */
+/** The resistor that stands in series with the source, by form. */
+const SOURCE_LEG: Partial<Record<ValueForm['kind'], string>> = {
+  attenuator: 'R1',
+  'level-shift': 'R1',
+  'non-inverting-up': 'R1',
+  'weighted-difference': 'R3',
+  inverting: 'Rg',
+  'inverting-up': 'Rg',
+  'inverting-down': 'Rg',
+  difference: 'R1',
+}
+
+/** That resistor is at least this many times the source resistance, which is seldom well known (common practice). */
 const SOURCE_RATIO = 10
 
 /** A gain resistor of an integrated part may be smaller than the window of the other resistors, Ω. */
@@ -127,6 +140,10 @@ function exactly(form: ValueForm, target: [number, number], values: Record<strin
 /** Values of `choose.values` that belong to this stage, by the arrangement's own refs. */
 function fixedValues(design: Design, arrangement: Arrangement, suffix: string): Record<string, number> {
   const fixed: Record<string, number> = {}
+  const asked = askedArrangement(design)?.split('+')
+  const own = suffix === '' ? 0 : 1
+  // Values of a circuit that exists belong to its arrangement; where none is named, to all that have such a part.
+  if (asked && asked[own] !== arrangement.id) return fixed
   for (const ref of Object.keys(arrangement.roles)) {
     const value = design.choose.values?.[ref + suffix]
     if (value !== undefined) fixed[ref] = value
@@ -161,9 +178,8 @@ function listFor(design: Design, form: ValueForm, ref: string, fixed: number | u
   const { stock, series, minimum, maximum } = design.parts.resistors
   const least =
     form.kind === 'gain-single' && ref === 'Rg' ? Math.min(SMALLEST_GAIN_RESISTOR, minimum) : minimum
-  // A difference amplifier loads its source; below this its gain would hang on the source resistance.
-  const floor =
-    form.kind === 'difference' && ref === 'R1' ? Math.max(minimum, SOURCE_RATIO * (form.source ?? 0)) : least
+  // Below this the gain would hang on the source resistance.
+  const floor = ref === SOURCE_LEG[form.kind] ? Math.max(minimum, SOURCE_RATIO * (form.source ?? 0)) : least
   const values = stock.length > 0 ? sorted(stock) : standardValues(series, Math.min(floor, maximum), maximum)
   if (form.kind === 'level-shift' && ref === 'R3') return withEnd(values, Infinity)
   if (form.kind === 'non-inverting-up' && ref === 'Rg') return withEnd(values, Infinity)

@@ -38,6 +38,7 @@ export function sizeFilter(design: Design): RcFilter {
   const { choose, sensor, converter, parts } = design
   const chosen = choose.filter
   if (chosen?.kind === 'none') return NONE
+  const leastR = clampResistance(design)
   const fixedR = choose.values?.R9 ?? choose.drive?.resistance
   const fixedC = choose.values?.C9 ?? choose.drive?.capacitance
   const wantedCorner =
@@ -53,7 +54,7 @@ export function sizeFilter(design: Design): RcFilter {
   const corner = wantedCorner || 10_000
   const list = capacitorValues(design)
   const least = RESERVOIR_RATIO * converter.samplingCapacitance
-  const wantedC = 1 / (2 * Math.PI * corner * (fixedR || PREFERRED_RESISTANCE))
+  const wantedC = 1 / (2 * Math.PI * corner * (fixedR || Math.max(PREFERRED_RESISTANCE, leastR)))
   const allowed = list.filter((c) => c >= least)
   const capacitance = fixedC || closest(wantedC, allowed.length > 0 ? allowed : list)
   const wantedResistance = 1 / (2 * Math.PI * corner * capacitance)
@@ -61,7 +62,8 @@ export function sizeFilter(design: Design): RcFilter {
     parts.resistors.stock.length > 0
       ? parts.resistors.stock
       : standardValues(parts.resistors.series, 1, parts.resistors.maximum)
-  const resistance = fixedR || closest(wantedResistance, resistors)
+  const enough = resistors.filter((r) => r >= leastR)
+  const resistance = fixedR || closest(wantedResistance, enough.length > 0 ? enough : resistors)
   return {
     kind: 'rc',
     resistance,
@@ -70,6 +72,20 @@ export function sizeFilter(design: Design): RcFilter {
     wantedCorner: corner,
     wantedResistance,
   }
+}
+
+/**
+ * Smallest series resistance (Ω) with which the converter's clamp stays inside its current when the amplifier before it
+ * saturates at a rail, with the converter's supply on and, where that is stated, off. 0 without absolute limits.
+ */
+export function clampResistance(design: Design): number {
+  const { absolute, supply } = design.converter
+  if (!absolute || !(absolute.clampCurrent > 0)) return 0
+  const { positive, negative, tolerance, ripple } = design.rails
+  const top = positive + Math.abs(positive) * tolerance + ripple
+  const bottom = negative - Math.abs(negative) * tolerance - ripple
+  const ceiling = absolute.high - (supply ?? 0)
+  return Math.max(0, top - ceiling, absolute.low - bottom) / absolute.clampCurrent
 }
 
 /** The member of a list nearest by ratio. */

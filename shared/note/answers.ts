@@ -88,9 +88,13 @@ function oneCode(design: Design, plan: Plan, candidate: Candidate): Answer {
   const { unit } = design.sensor.quantity
   const slope = toSlope(candidate, design.sensor.quantity)
   const codes = 2 ** design.converter.bits
-  const used = candidate.realised
-    ? `${count(Math.abs(candidate.realised.codesUsed))} of ${count(codes)} codes used`
-    : `${count(codes)} codes`
+  const needed = candidate.realised ? Math.abs(candidate.realised.codesUsed) : null
+  const used =
+    needed === null
+      ? `${count(codes)} codes`
+      : needed > codes
+        ? `The span asks for ${count(needed)} of ${count(codes)} codes`
+        : `${count(needed)} of ${count(codes)} codes used`
   const corner = candidate.filter?.kind === 'rc' ? [`Corner ${figure(candidate.filter.corner, 'Hz')}`] : []
   return {
     label: 'One code',

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { isCleanText } from './clean-text.ts'
 
 /**
  * Number fields of a design. The schema carries the label, the unit and the accepted range of each field, so that
@@ -68,3 +69,17 @@ export const nonNegative = (label: string, unit: string, max = LARGEST) =>
 
 /** A limit ± as a fraction: 0 ≤ x < 1. */
 export const fraction = (label: string) => numberField(label, '', { min: 0, below: 1, display: 'percent' })
+
+/** One line of text in a design: a name or a unit. Refuses control characters and direction marks. */
+export const lineField = (label: string, least: number, most: number) =>
+  z
+    .string()
+    .trim()
+    .min(least)
+    .max(most)
+    .refine(isCleanText)
+    .register(fieldMeta, {
+      label,
+      unit: '',
+      accepted: `text of ${least} to ${most} characters on one line, without control characters`,
+    })

@@ -1,7 +1,8 @@
 import { arrangements } from '#shared/amplifiers/index.ts'
 import { readDesign } from '#shared/design/read.ts'
 import type { Design } from '#shared/design/schema.ts'
-import { trySingle, type Trial, type TrialResult } from '#shared/design/plan-stage.ts'
+import { trySingle } from '#shared/design/plan-stage.ts'
+import type { Trial, TrialResult } from '#shared/design/settle.ts'
 import { splitsFor, tryTwo } from '#shared/design/plan-two-stages.ts'
 
 /** A document with its defaults; throws with every fault where it is refused. */

@@ -2,6 +2,7 @@ import { createContext, memo, use, useId, type CSSProperties, type ReactNode } f
 import type { Shape, TextShape } from '#shared/drawings/shapes.ts'
 import { linePaint, textPaint, type Hatch, type LineStyle } from '#shared/drawings/styles.ts'
 import './drawings.css'
+import './frames.css'
 
 const PatternPrefix = createContext('')
 

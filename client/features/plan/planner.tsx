@@ -27,7 +27,9 @@ import { isOpenQuestion, listFindings, pressing, toDraftPath } from './words/fin
 import { pathOfNode } from './words/nodes.ts'
 import { stepNumber, stepOfPath, steps, stepTitle, type StepId } from './words/steps.ts'
 import { StepForm } from './steps/step-form.tsx'
-import './plan.css'
+import './styles/frame.css'
+import './styles/steps.css'
+import './styles/narrow.css'
 
 interface PlannerProps {
   session: PlanSession

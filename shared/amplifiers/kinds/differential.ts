@@ -1,4 +1,5 @@
 import type { Equation, Reason } from '#shared/design/plan.ts'
+import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { gainAndOffset, leg, ohms, voltsText } from '../equation.ts'
 import {
   intercept,
@@ -83,7 +84,14 @@ function consider(base: DifferentialStage, feed: LevelFeed, need: Need): Conside
   if (feed.kind === 'ground') return fixedLevel(base, feed, need, 0, range)
   const reference = shiftReference(need)
   if ('reason' in reference) return { ok: false, reason: reference.reason }
-  if (feed.kind === 'reference') return fixedLevel(base, feed, need, reference.voltage, range)
+  if (feed.kind === 'reference') {
+    if (!reference.buffered)
+      return refuse(
+        'reference-unbuffered',
+        'The reference is not buffered: a reference leg needs a stiff level. Take the buffered divider, or buffer the reference.',
+      )
+    return fixedLevel(base, feed, need, reference.voltage, range)
+  }
   if (need.level !== null) {
     const placed = placeWithOffset(need, 1, need.level, range)
     if (!placed || need.level <= 0 || need.level >= reference.voltage)
@@ -102,7 +110,7 @@ function consider(base: DifferentialStage, feed: LevelFeed, need: Need): Conside
   if (gain < range.minimum || gain > range.maximum)
     return refuse(
       'gain-range',
-      `The gain is ${gain.toPrecision(4)}; this stage gives ${range.minimum.toPrecision(3)} to ${range.maximum.toPrecision(3)}.`,
+      `The gain is ${times(gain)}; this stage gives ${times(range.minimum)} to ${times(range.maximum)}.`,
       { gain, ...range },
     )
   if (level <= 0 || level >= reference.voltage)
@@ -113,6 +121,8 @@ function consider(base: DifferentialStage, feed: LevelFeed, need: Need): Conside
     )
   return dividerSizing(base, need, target, reference, false)
 }
+
+const times = (gain: number): string => formatQuantity(gain, '', { digits: 4 })
 
 function supplyReasonFor(base: DifferentialStage, feed: LevelFeed, need: Need): Reason | null {
   return base.amplifiers > 1 || feed.kind === 'divider' || base.id === 'difference'
@@ -131,7 +141,7 @@ function fixedLevel(
   if (!placed)
     return refuse(
       'level-misses',
-      `With the reference leg at ${voltsText(level)} no gain from ${range.minimum.toPrecision(3)} to ${range.maximum.toPrecision(3)} brings the whole signal inside the target.`,
+      `With the reference leg at ${voltsText(level)} no gain from ${times(range.minimum)} to ${times(range.maximum)} brings the whole signal inside the target.`,
       { level },
     )
   return {

@@ -1,11 +1,11 @@
 import { z } from 'zod'
 import type { SourceVariable } from '#shared/analysis/extremes.ts'
-import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
+import { fraction, lineField, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 
 /** The measurand: what is read, in its own unit. */
 export const quantitySchema = z.strictObject({
-  name: z.string().trim().min(1).max(60),
-  unit: z.string().max(16),
+  name: lineField('Measurand', 1, 60),
+  unit: lineField('Unit of the measurand', 0, 16),
   low: numberField('Measurand, low end', ''),
   high: numberField('Measurand, high end', ''),
 })

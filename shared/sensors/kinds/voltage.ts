@@ -165,6 +165,10 @@ export const voltage = defineSensor({
       Math.abs(sensor.fault?.high ?? 0),
       Math.abs(sensor.commonMode?.low ?? 0),
       Math.abs(sensor.commonMode?.high ?? 0),
+      Math.abs(sensor.output.low),
+      Math.abs(sensor.output.high),
+      Math.abs(sensor.beyond?.low ?? 0),
+      Math.abs(sensor.beyond?.high ?? 0),
     )
     return reach > 50
       ? [

@@ -57,6 +57,13 @@ describe('answers of the first sheet', () => {
     expect(plain(code?.small[0])).toBe('15 732 of 16 384 codes used')
   })
 
+  it('does not say that more codes are used than there are', () => {
+    const realised = sampleCandidate.realised && { ...sampleCandidate.realised, codesUsed: 25168 }
+    const plan = { ...samplePlan, candidates: [{ ...sampleCandidate, ...(realised ? { realised } : {}) }] }
+    const answers = buildNote({ document: sampleDocument, plan, context: sampleContext }).first.answers
+    expect(plain(answers[3]?.small[0])).toBe('The span asks for 25 168 of 16 384 codes')
+  })
+
   it('marks a linear range that does not reach the required span as over', () => {
     const levels = sampleCandidate.levels?.map((level) => ({
       ...level,

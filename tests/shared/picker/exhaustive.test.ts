@@ -43,7 +43,7 @@ function compare(request: PickRequest): 'same' | 'none' {
 describe.each(Object.keys(formMakers))('%s', { timeout: 60_000 }, (name) => {
   const make = formMakers[name] as (typeof formMakers)[string]
   const refs = formRefs(make(seeded(1))).length
-  const rounds = refs < 4 ? 120 : 60
+  const rounds = refs < 4 ? 100 : 50
 
   function run(
     seed: number,

@@ -129,6 +129,21 @@ describe('values that a person fixed', () => {
   })
 })
 
+describe('links and open places', () => {
+  it('save a part where they cost nothing', () => {
+    const lists = { Rf: [0, ...e24], Rg: [...e24, Infinity] }
+    const result = found(pickValues(ask(up, [0.7325, 0.7675], e24, { lists })))
+    expect(result.best.some((pick) => pick.values['Rg'] === undefined)).toBe(true)
+  })
+
+  it('do not hide their neighbours where link meets link, which has no meaning', () => {
+    const form: ValueForm = { kind: 'level-shift', signal: [0, 1], reference: 2.5 }
+    const lists = { R1: [0], R2: [10_000], R3: [0, 10_000] }
+    const result = found(pickValues(ask(form, [0, 0.9], e24, { lists })))
+    expect(result.best.map((pick) => pick.values)).toEqual([{ R1: 0, R2: 10_000, R3: 10_000 }])
+  })
+})
+
 describe('what cannot be picked', () => {
   it('is outside the window beyond ten spans, with the closest pick', () => {
     const result = pickValues(ask({ kind: 'non-inverting', signal: [0, 1] }, [0, 0.01], e96))

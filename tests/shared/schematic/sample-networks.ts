@@ -84,7 +84,7 @@ export function sampleNetwork(arrangement: Arrangement, options: SampleOptions):
     sourceResistance: options.sourceResistance ?? 0,
     floating: false,
     target: { low: 0, high: 2.5 },
-    reference: { voltage: 2.5, resistance: options.referenceResistance ?? 0 },
+    reference: { voltage: 2.5, resistance: options.referenceResistance ?? 0, buffered: true },
     rails: { positive: 5, negative: 0 },
     parts: design.parts,
     level: null,

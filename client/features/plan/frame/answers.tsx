@@ -8,7 +8,12 @@ import { usePlanner } from '../planner-context.tsx'
 export function PlanAnswers() {
   const { planning, candidate, stale } = usePlanner()
   const { planned } = planning
-  if (!planned || !candidate) return <p className="plan-none">Answers stand here once an arrangement fits.</p>
+  if (!planned || !candidate)
+    return (
+      <p className="plan-none">
+        {isAwaited(planning) ? <Dash width="10em" /> : 'Answers stand here once an arrangement fits.'}
+      </p>
+    )
   return (
     <dl className={`answers${stale ? ' is-stale' : ''}`} data-testid="answers">
       {toAnswers(planned.design, planned.plan, candidate).map((answer) => (

@@ -4,7 +4,7 @@ import { getAt } from '../draft/paths.ts'
 import { fieldAt, type FieldSpec } from '../form/introspect.ts'
 import { SchemaField } from '../form/schema-field.tsx'
 import { usePlanner } from '../planner-context.tsx'
-import { Cautions, Fields, FoldedFields, StepHead } from './step-parts.tsx'
+import { Cautions, FoldedFields, StepHead } from './step-parts.tsx'
 
 /** Keys of every sensor that other steps ask for. */
 const elsewhere = new Set(['kind', 'quantity'])
