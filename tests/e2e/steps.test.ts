@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { planDesign } from '#shared/design/plan-design.ts'
 import { expectAccessible, startApp, type TestApp } from './support/app.ts'
 
 const steps = [
@@ -113,6 +114,11 @@ describe('the steps of a plan', () => {
     const { page, close } = await app.open()
     await page.goto('/')
     await page.locator('[data-testid=answers]').waitFor()
+    await page.getByRole('button', { name: 'Start from' }).click()
+    await page.getByRole('menuitem', { name: /bridge of 2 mV/ }).click()
+    await page.getByText('Stilling-well level', { exact: true }).first().waitFor()
+    await page.getByText(/^in this browser/).waitFor()
+    await page.waitForTimeout(1500)
     await page.evaluate(() => {
       const held = globalThis as unknown as { longest: number }
       held.longest = 0
@@ -120,12 +126,20 @@ describe('the steps of a plan', () => {
         for (const entry of list.getEntries()) held.longest = Math.max(held.longest, entry.duration)
       }).observe({ type: 'longtask', buffered: false })
     })
-    await page.getByLabel('Sensor output, high').fill('')
-    await page.getByLabel('Sensor output, high').pressSequentially('0.41234', { delay: 60 })
-    await page.locator('[data-testid=answers]').waitFor()
-    // The plan itself takes longer than this: were it computed on the page, the longest task would show it.
+    const field = page.getByLabel('Excitation voltage')
+    await field.fill('')
+    await field.pressSequentially('4.8765', { delay: 120 })
+    await page.waitForTimeout(1500)
     const longest = await page.evaluate(() => (globalThis as unknown as { longest: number }).longest)
-    expect(longest).toBeLessThan(400)
+    // The same plan computed here, under the same load: on the page's own thread it would be one task of this length.
+    const document = await page.evaluate(
+      () => (JSON.parse(localStorage.getItem('spandrel.visitor') ?? '{}') as { document: unknown }).document,
+    )
+    planDesign(document)
+    const start = performance.now()
+    planDesign(document)
+    const alone = performance.now() - start
+    expect(longest).toBeLessThan(alone * 0.7)
     await close()
   })
 })

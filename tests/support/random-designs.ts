@@ -1,4 +1,4 @@
-import { buildConverter, buildDesign, buildDifferentialSensor, buildSensor } from './designs.ts'
+import { buildConverter, buildDesign, buildDifferentialSensor } from './designs.ts'
 import { schemaLeaves, type Leaf } from './schema-leaves.ts'
 
 /*

@@ -43,6 +43,9 @@ interface PlannerProps {
   notice?: ReactNode
 }
 
+/** Most keystrokes change no level: the drawing is laid out again only when one of its own figures did. */
+const Diagram = memo(LevelDiagram)
+
 /** The plan with its steps: everything between the title block and the action bar, for visitors and channels alike. */
 export function Planner({ session, where, step, stepHref, cells, readOnly, notice }: PlannerProps) {
   const value = usePlannerValue({ session, where, step, stepHref, readOnly })
@@ -51,21 +54,14 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
   usePageTitle(step ? `Step ${stepNumber(step)} of ${steps.length}: ${stepTitle(step)}` : 'Plan', name)
   usePlanKeys(value)
   useSpokenFindings(value)
-  const quantity = useMemo(
-    () => ({
-      name: textAt(state.document, 'sensor.quantity.name'),
-      unit: textAt(state.document, 'sensor.quantity.unit'),
-      low:
-        planning.planned?.design.sensor.quantity.low ?? numberAt(state.document, 'sensor.quantity.low') ?? 0,
-      high:
-        planning.planned?.design.sensor.quantity.high ??
-        numberAt(state.document, 'sensor.quantity.high') ??
-        1,
-    }),
-    [state.document, planning.planned],
-  )
+  const quantity = useMeasurand(value)
   const levels = candidate?.levels ?? unknownLevels
   const lastStage = levels.at(-2)?.node ?? null
+  const handleGo = useCallback(
+    (node: string, mark: string) =>
+      goTo(pathOfNode(node, mark.endsWith('limit') ? 'region' : 'signal', lastStage)),
+    [goTo, lastStage],
+  )
   return (
     <PlannerProvider value={value}>
       <TitleBlock cells={cells} />
@@ -91,7 +87,7 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
             {!planning.planned && planning.status === 'computing' && (
               <Awaited what="the first plan" onRetry={() => session.retry()} />
             )}
-            <LevelDiagram
+            <Diagram
               levels={levels}
               quantity={quantity}
               editing={value.editing}
@@ -110,6 +106,15 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
       <ActionBar />
     </PlannerProvider>
   )
+}
+
+/** Name, unit and span as the diagram needs them: of the plan where there is one, else of the draft. */
+function useMeasurand({ state, planning, quantity }: PlannerValue) {
+  const planned = planning.planned?.design.sensor.quantity
+  const { name, unit } = quantity
+  const low = planned?.low ?? numberAt(state.document, 'sensor.quantity.low') ?? 0
+  const high = planned?.high ?? numberAt(state.document, 'sensor.quantity.high') ?? 1
+  return useMemo(() => ({ name, unit, low, high }), [name, unit, low, high])
 }
 
 function usePlannerValue({

@@ -39,13 +39,13 @@ interface Factor {
 const WIDER = 1e-11
 
 /**
- * The search at one ratio of the first pair: c = p − target and d at the two ends (V), the ratio and the least that its
- * pairs cost. One search runs at a time and nothing survives it; a shared array keeps the inner loops free of garbage.
+ * The search at one ratio of the first pair: c = p − target and d at the two ends (V), the ratio, the least that its
+ * pairs cost, and the least that any β misses by (V). One search runs at a time and nothing survives it; a shared array keeps the inner loops free of garbage.
  */
-const at = new Float64Array(6)
+const at = new Float64Array(7)
 /** Member of a pair that does not exist. */
 const ALONE = memberCode(0, 0)
-const [C0, C1, D0, D1, RATIO, LEAST] = [0, 1, 2, 3, 4, 5] as const
+const [C0, C1, D0, D1, RATIO, LEAST, MISS] = [0, 1, 2, 3, 4, 5, 6] as const
 
 /**
  * Offers the list every pick that it may still accept, exactly:
@@ -105,10 +105,12 @@ export class Search {
     const { list } = this
     const uppers = slots.values[first.upperSlot] as Float64Array
     const lowers = slots.values[first.lowerSlot] as Float64Array
-    const upperCosts = slots.costs[first.upperSlot] as Float64Array
-    const lowerCosts = slots.costs[first.lowerSlot] as Float64Array
     const [low, high] = this.idealInterval(list.limit)
     if (high < 0) return
+    // The nearest lines first: what they find lowers the limit before the many others are looked at.
+    const near = list.limit / 8
+    const later: number[] = []
+    const misses: number[] = []
     const [smallest, largest] = [(lowers[0] as number) + below, (lowers[lowers.length - 1] as number) + below]
     const start =
       low > 0
@@ -133,11 +135,31 @@ export class Search {
         at[RATIO] = a / b
         if (!this.approach()) continue
         if (bounds && !pairAllowed(uppers[i] as number, lowers[j] as number, bounds)) continue
-        at[LEAST] = (upperCosts[i] as number) + (lowerCosts[j] as number)
         const member = memberCode(i, j)
-        if (!list.hopeless(at[LEAST], 0)) this.visitSecond(member, member + 1)
+        if ((at[MISS] as number) > near) {
+          later.push(member)
+          misses.push(at[MISS] as number)
+        } else this.visitMember(member)
       }
     }
+    for (const cut of [near * 3, Infinity]) {
+      for (let k = 0; k < later.length; k++) {
+        const miss = misses[k] as number
+        if (miss > cut || miss > list.limit) continue
+        const member = later[k] as number
+        at[RATIO] =
+          ((uppers[upperOf(first, member)] as number) + above) /
+          ((lowers[lowerOf(first, member)] as number) + below)
+        misses[k] = Infinity
+        if (this.approach()) this.visitMember(member)
+      }
+    }
+  }
+
+  private visitMember(member: number): void {
+    const { first, slots } = this.task
+    at[LEAST] = memberCost(slots, first, member)
+    if (!this.list.hopeless(at[LEAST], 0)) this.visitSecond(member, member + 1)
   }
 
   /** Works out the line of the ratio in hand; false where no β brings it within the limit. */
@@ -155,8 +177,9 @@ export class Search {
     at[D0] = d0
     at[D1] = d1
     const size = Math.abs(d0) + Math.abs(d1)
-    const miss = Math.abs(c0 * d1 - c1 * d0)
-    return size > 0 ? miss <= this.list.limit * size : Math.max(Math.abs(c0), Math.abs(c1)) <= this.list.limit
+    const miss = size > 0 ? Math.abs(c0 * d1 - c1 * d0) / size : Math.max(Math.abs(c0), Math.abs(c1))
+    at[MISS] = miss
+    return miss <= this.list.limit
   }
 
   private visitSecond(from: number, to: number): void {

@@ -100,14 +100,8 @@ const refused: Row[] = [
     /reference leg at 2.5 V/,
     { level: 2.5 },
   ],
-  ['two-amplifier', 'gain-range', twoWires(-1.5, 1.5), /The gain is 0.8000/, { gain: 0.8 }],
-  [
-    'integrated-instrumentation',
-    'gain-range',
-    twoWires(-1e-4, 1e-4),
-    /The gain is 1.200e\+4/,
-    { gain: 12000 },
-  ],
+  ['two-amplifier', 'gain-range', twoWires(-1.5, 1.5), /The gain is 0\.8;/, { gain: 0.8 }],
+  ['integrated-instrumentation', 'gain-range', twoWires(-1e-4, 1e-4), /The gain is 12 000;/, { gain: 12000 }],
   [
     'integrated-instrumentation',
     'supply-low',
@@ -170,7 +164,7 @@ const clipped: Row[] = [
       sensor: buildSensor(0.1, 2.499, { accuracy: { span: 0.01 } }),
       converter: buildConverter({ guard: { low: 0, high: 0 } }),
     }),
-    /above its range/,
+    /worst board leaves its range by/,
     { limit: 2.5 },
   ],
   [

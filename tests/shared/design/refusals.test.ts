@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import { planDesign } from '#shared/design/plan-design.ts'
 import type { Fault } from '#shared/design/plan.ts'
 import { DesignRefused, readDesign } from '#shared/design/read.ts'
-import { buildConverter, buildDesign, buildDifferentialSensor, buildSensor } from '#tests/support/designs.ts'
+import { buildDesign, buildDifferentialSensor, buildSensor } from '#tests/support/designs.ts'
 
 /*
  * What is not a design is refused, one fault for each thing wrong, by path, reason and what is accepted; by the reader and
@@ -136,8 +136,8 @@ const outOfRange: Row[] = [
     /converter bits is 40/,
     /from 4 up to 32/,
   ],
-  ['an empty name', withValue('name', '  '), 'name', /./, /at least 1 character/],
-  ['an endless name', withValue('name', 'a'.repeat(1000)), 'name', /./, /at most 120 characters/],
+  ['an empty name', withValue('name', '  '), 'name', /./, /1 to 120 characters/],
+  ['an endless name', withValue('name', 'a'.repeat(1000)), 'name', /./, /1 to 120 characters/],
   [
     'a huge list',
     withValue(
@@ -447,7 +447,7 @@ const shapes: Row[] = [
     /converter bits is missing/,
     /whole number/,
   ],
-  ['a missing name', without('name'), 'name', /is missing/, /a string/],
+  ['a missing name', without('name'), 'name', /is missing/, /text of 1 to 120/],
   ['a missing end of the span', without('sensor.output.high'), 'sensor.output.high', /is missing/, /in V/],
   ['a missing kind', without('sensor.kind'), 'sensor.kind', /missing or not known/, /"voltage", "bridge"/],
   [

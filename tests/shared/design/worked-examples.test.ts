@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest'
+import { describe, it } from 'vitest'
 import { solveDc, type DcSolution } from '#shared/analysis/dc.ts'
 import { assess } from '#shared/budget/assess.ts'
 import type { Chain } from '#shared/design/chain.ts'
