@@ -25,7 +25,11 @@ interface SchemaNode {
 }
 
 export function toJsonSchema(): SchemaNode {
-  return z.toJSONSchema(designSchema, { io: 'input', metadata: fieldMeta, unrepresentable: 'any' }) as SchemaNode
+  return z.toJSONSchema(designSchema, {
+    io: 'input',
+    metadata: fieldMeta,
+    unrepresentable: 'any',
+  }) as SchemaNode
 }
 
 interface Row {
@@ -44,7 +48,11 @@ export function toRows(node: SchemaNode, path: string, required: boolean): Row[]
       toRows(child, path ? `${path}.${key}` : key, required && (node.required ?? []).includes(key)),
     )
   const absent =
-    node.default !== undefined ? `\`${JSON.stringify(node.default)}\`` : required ? 'required' : 'left to the plan'
+    node.default !== undefined
+      ? `\`${JSON.stringify(node.default)}\``
+      : required
+        ? 'required'
+        : 'left to the plan'
   return [{ path, label: node.label ?? '', accepted: node.accepted ?? acceptedOf(node), absent }]
 }
 
@@ -61,7 +69,9 @@ function acceptedOf(node: SchemaNode): string {
 
 function defaultsPage(): string {
   const rows = toRows(toJsonSchema(), '', true)
-  const lines = rows.map((r) => `| \`${r.path}\` | ${r.label} | ${r.accepted.replaceAll('|', '\\|')} | ${r.absent} |`)
+  const lines = rows.map(
+    (r) => `| \`${r.path}\` | ${r.label} | ${r.accepted.replaceAll('|', '\\|')} | ${r.absent} |`,
+  )
   return [
     '# The design file: every key',
     '',

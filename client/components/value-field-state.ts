@@ -1,4 +1,4 @@
-import { formatEditable, type DecimalSign } from '#shared/units/format-quantity.ts'
+import { formatEditable, formatQuantity, type DecimalSign } from '#shared/units/format-quantity.ts'
 import { isFormula, parseQuantity, type Choice } from '#shared/units/parse-quantity.ts'
 
 /** What a value field knows about its text; without anything of the page, so that it can be tested by itself. */
@@ -22,6 +22,18 @@ export function readText(text: string, unit: FieldUnit): Reading {
   return parsed.ok
     ? { kind: 'value', value: parsed.value, readAs: parsed.readAs }
     : { kind: 'refused', reason: parsed.reason, accepted: parsed.accepted, choices: parsed.choices ?? [] }
+}
+
+/**
+ * As `readText`, but what the program itself writes for the value that is set is never a question: 4.096 from a
+ * stored design means that value, whichever decimal sign the person uses.
+ */
+export function readShown(text: string, value: number | null, unit: FieldUnit): Reading {
+  const read = readText(text, unit)
+  if (read.kind !== 'refused' || value === null || text !== textOf(value, unit)) return read
+  const { display } = unit
+  const readAs = formatQuantity(value, unit.unit, { digits: 12, ...(display ? { display } : {}) })
+  return { kind: 'value', value, readAs }
 }
 
 export interface FieldText {

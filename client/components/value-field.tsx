@@ -8,7 +8,7 @@ import { describedBy, Field, type FieldFrame } from './field.tsx'
 import {
   asksDecimalSign,
   followOutside,
-  readText,
+  readShown,
   startText,
   textOf,
   unitSuffix,
@@ -74,7 +74,7 @@ export function ValueField(props: ValueFieldProps) {
     latest.current = text
   }, [text])
 
-  const direct = readText(text, fieldUnit)
+  const direct = readShown(text, value, fieldUnit)
   const reading = direct.kind === 'formula' && worked?.text === text ? worked.reading : direct
 
   const report = (next: string, read: Reading) => {
@@ -89,11 +89,12 @@ export function ValueField(props: ValueFieldProps) {
     }
   }
 
-  const type = (next: string) => {
+  /** `meant`: the value that a text stands for which the program wrote. */
+  const type = (next: string, meant: number | null = value) => {
     setTouched(true)
     latest.current = next
     setState((s) => ({ ...s, text: next }))
-    const read = readText(next, fieldUnit)
+    const read = readShown(next, meant, fieldUnit)
     if (read.kind !== 'formula') return report(next, read)
     void parseFormula(next, fieldUnit).then((result) => {
       if (latest.current !== next) return
@@ -106,7 +107,7 @@ export function ValueField(props: ValueFieldProps) {
   }
 
   const take = (choice: Choice) => {
-    if (choice.decimalSign === undefined) return type(textOf(choice.value, fieldUnit))
+    if (choice.decimalSign === undefined) return type(textOf(choice.value, fieldUnit), choice.value)
     // Every field reads by this sign from now on, this one too.
     setPreferences({ decimalSign: choice.decimalSign })
     report(text, { kind: 'value', value: choice.value, readAs: choice.label })
@@ -117,18 +118,22 @@ export function ValueField(props: ValueFieldProps) {
     if (event.key === 'Enter') setTouched(true)
     if (event.key === 'Escape' && text !== atFocus.current.text) {
       event.stopPropagation()
-      type(atFocus.current.text)
+      type(atFocus.current.text, atFocus.current.value)
     }
     if (event.key !== 'ArrowUp' && event.key !== 'ArrowDown') return
     event.preventDefault()
     const series = standardSeries === true ? 'E96' : standardSeries
     const step = stepQuantity(text, value, {
       ...fieldUnit,
+      // What the program wrote has a point.
+      ...(value !== null && text === textOf(value, fieldUnit) && !decimalSign
+        ? { decimalSign: '.' as const }
+        : {}),
       direction: event.key === 'ArrowUp' ? 1 : -1,
       large: event.shiftKey,
       ...(series && value !== null && value > 0 ? { standard: around(series, value) } : {}),
     })
-    if (step) type(step.text)
+    if (step) type(step.text, step.value)
   }
 
   // A question is put at once, so that Tab leads to its answers; a fault only when the field is left.

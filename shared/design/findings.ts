@@ -90,7 +90,7 @@ export function findingsFor(
     if (entry.state === 'clear') continue
     list.push(overVoltageFinding(entry))
   }
-  list.push(...choiceFindings(design, rest.candidate))
+  list.push(...rangeFindings(design, rest.candidate), ...choiceFindings(design, rest.candidate))
   const weight = { over: 0, tight: 1, caution: 2, info: 3 } as const
   return list.sort((a, b) => weight[a.severity] - weight[b.severity])
 }
@@ -180,6 +180,29 @@ function overVoltageFinding(entry: OverVoltage): Finding {
       ...(entry.clampCurrent === null ? {} : { current: entry.clampCurrent }),
     },
   }
+}
+
+/** Fewer codes over the span than this are no measurement; under the share of the range something is left unused. */
+const FEWEST_CODES = 16
+const SMALL_SHARE = 0.25
+
+/** How much of the converter's range the span covers, where that is little. */
+function rangeFindings(design: Design, candidate: Candidate): Finding[] {
+  const used = candidate.realised?.codesUsed
+  const all = 2 ** design.converter.bits
+  if (used === undefined || used >= SMALL_SHARE * all) return []
+  const codes = formatQuantity(Math.floor(used), '', { digits: 9 })
+  const over = used < FEWEST_CODES
+  return [
+    {
+      code: over ? 'span-unresolved' : 'few-codes',
+      severity: over ? 'over' : 'caution',
+      place: 'Converter input',
+      path: 'converter.input',
+      text: `The whole span covers ${codes} of ${formatQuantity(all, '', { digits: 9 })} codes${over ? ': it cannot be told apart' : ''}. More gain, a smaller converter range or, where the rails stop the signal, higher rails would use more.`,
+      numbers: { used, all },
+    },
+  ]
 }
 
 /** What a person fixed is obeyed; how much worse than the free choice it is, and what had no effect, stands here. */

@@ -314,7 +314,7 @@ class Plot {
     const column = this.area.x + this.area.width + 68
     const reached = (value: number) => this.y(readTransfer(this.input, value).volts)
     const [y1, y2] = [reached(quantity.low), reached(quantity.high)]
-    const used = `${formatNumber(codesUsed, { digits: 10, ...sign })} of ${formatNumber(2 ** converter.bits, { digits: 10, ...sign })}`
+    const used = `${formatNumber(Math.floor(codesUsed), { digits: 10, ...sign })} of ${formatNumber(2 ** converter.bits, { digits: 10, ...sign })}`
     const beside = (y: number) => line('extension', this.area.x + this.area.width, y, column + 3, y)
     return [
       ...shapes,
@@ -388,6 +388,6 @@ export function describeTransfer(input: TransferInput, decimalSign: DecimalSign 
   return (
     `${quantity.name} from ${formatRange(quantity.low, quantity.high, quantity.unit, sign)} gives ` +
     `${formatRange(nominal.low, nominal.high, 'V', sign)} at the converter, ` +
-    `${formatNumber(codesUsed, { digits: 10, ...sign })} codes.${linear}`
+    `${formatNumber(Math.floor(codesUsed), { digits: 10, ...sign })} codes.${linear}`
   )
 }

@@ -47,14 +47,14 @@ export function spanText(span: Span, unit: string, direction: number): string {
 
 function leastRoom(design: Design, candidate: Candidate): Answer {
   const rule = `Rule: ${share(design.rules.room)}`
-  const least = findLeastRoom(candidate.levels ?? [])
+  const least = findLeastRoom(candidate.levels ?? [], candidate.headroom)
   if (!least) return { label: 'Least room, worst case', figure: NONE, small: [rule] }
   const nominal = least.level.nominalRoom[least.side]
   return {
     label: 'Least room, worst case',
     figure: room(least.fraction),
     small: [
-      `${least.side === 'low' ? 'Below' : 'Above'}, ${uncapital(least.pin)}`,
+      `${least.pinSide === 'low' ? 'Below' : 'Above'}, ${uncapital(least.pin)}`,
       `Rule: ${share(design.rules.room)}. Nominal parts: ${room(nominal)}`,
     ],
     ...(least.level.state === 'over' || least.level.state === 'tight' ? { state: least.level.state } : {}),
@@ -73,7 +73,13 @@ function errorAsBuilt(design: Design, plan: Plan, candidate: Candidate): Answer 
   const small = nominal === null ? [] : [`Nominal parts miss the end points by ${upward(nominal, unit)}`]
   if (slope === null) return { label: 'Error as built, worst case', figure: NONE, small }
   if (candidate.tolerance) {
-    const volts = Math.max(Math.abs(candidate.tolerance.worst.low), Math.abs(candidate.tolerance.worst.high))
+    // The tolerances act about the nominal end points, which miss their targets already.
+    const { worst } = candidate.tolerance
+    const missed = candidate.realised?.endpointError ?? { low: 0, high: 0 }
+    const volts = Math.max(
+      Math.abs(worst.low) + Math.abs(missed.low),
+      Math.abs(worst.high) + Math.abs(missed.high),
+    )
     return { label: 'Error as built, worst case', figure: `±${upward(volts / slope, unit)}`, small }
   }
   const ends = toWorstEndError(candidate, plan)
@@ -88,7 +94,7 @@ function oneCode(design: Design, plan: Plan, candidate: Candidate): Answer {
   const { unit } = design.sensor.quantity
   const slope = toSlope(candidate, design.sensor.quantity)
   const codes = 2 ** design.converter.bits
-  const needed = candidate.realised ? Math.abs(candidate.realised.codesUsed) : null
+  const needed = candidate.realised ? Math.floor(Math.abs(candidate.realised.codesUsed)) : null
   const used =
     needed === null
       ? `${count(codes)} codes`

@@ -1,4 +1,4 @@
-import type { Candidate, Ends, Level, Plan, RoomState } from '#shared/design/plan.ts'
+import type { Candidate, Ends, HeadroomEntry, Level, Plan, RoomState } from '#shared/design/plan.ts'
 
 interface Quantity {
   low: number
@@ -28,23 +28,46 @@ export function toLinearSpan(levels: readonly Level[], quantity: Quantity, worst
 
 export interface LeastRoom {
   fraction: number
+  /** Side of the level's own region. */
   side: 'low' | 'high'
   level: Level
+  /** The pin that has this room, and which of its limits is the near one. */
   pin: string
+  pinSide: 'low' | 'high'
 }
 
 /** The smallest worst-case room of all nodes; null without levels. */
-export function findLeastRoom(levels: readonly Level[]): LeastRoom | null {
+export function findLeastRoom(
+  levels: readonly Level[],
+  headroom: readonly HeadroomEntry[] = [],
+): LeastRoom | null {
   let least: LeastRoom | null = null
   for (const level of levels) {
     if (level.state === 'unknown') continue
     for (const side of ['low', 'high'] as const) {
       const fraction = level.room[side]
       if (!Number.isFinite(fraction) || (least && fraction >= least.fraction)) continue
-      least = { fraction, side, level, pin: level.roomAt[side] }
+      const pin = level.roomAt[side]
+      least = { fraction, side, level, pin, pinSide: limitOf(pin, side, level, headroom) }
     }
   }
   return least
+}
+
+/**
+ * The sensor's region is that of later pins, seen from the sensor: behind an inverting stage its lower end is the
+ * upper limit of a pin. Both are met at the same measurand.
+ */
+function limitOf(
+  pin: string,
+  side: 'low' | 'high',
+  level: Level,
+  headroom: readonly HeadroomEntry[],
+): 'low' | 'high' {
+  const clips = level.worstClipsAt[side]
+  const own = level.node === 'sensor' ? headroom.find((entry) => entry.pin === pin)?.worstClipsAt : undefined
+  const other = side === 'low' ? 'high' : 'low'
+  return own && clips !== null && own[side] !== clips && own[other] === clips ? other : side
 }
 
 /** Volts at the converter per unit of the measurand, nominal; null before a chain is realised. */

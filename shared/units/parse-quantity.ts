@@ -151,7 +151,7 @@ function plainSuffix(suffix: string, { unit, display }: ParseOptions): number | 
 /** In farads a capital K, M or G after a number is more likely a tolerance than kilofarads: both are offered. */
 const isDoubtful = (suffix: string, unit: string) => unit === 'F' && /^[KMG]$/.test(suffix)
 
-/** A suffix that is another unit, or none at all. The number alone is offered in the field's own unit. */
+/** A suffix that is another unit, or none at all. The number is offered with its prefix in the field's own unit. */
 function unreadable(
   source: string,
   suffix: string,
@@ -160,8 +160,9 @@ function unreadable(
   others: Choice[] = [],
 ): ParsedQuantity {
   const spelled = unitSpelledBy(suffix)
-  const own = choice(value, options)
   if (spelled) {
+    const power = options.display === 'percent' ? -2 : spelled.exponent
+    const own = choice(scaled(String(value), power), options)
     const here = options.display === 'percent' ? 'a percentage' : measuredBy(options.unit)
     const reading = formatQuantity(scaled(String(value), spelled.exponent), spelled.unit, { digits: 12 })
     const reason = `“${source}” is ${measuredBy(spelled.unit)}, ${reading}; this field takes ${here}, ${own.label}.`

@@ -2,6 +2,7 @@ import { describe, expect, it } from 'vitest'
 import {
   asksDecimalSign,
   followOutside,
+  readShown,
   readText,
   startText,
   unitSuffix,
@@ -60,6 +61,15 @@ describe('reading the text of a value field', () => {
     expect(sign.kind === 'refused' && asksDecimalSign(sign.choices)).toBe(true)
     expect(unit.kind === 'refused' && unit.choices.length > 0 && asksDecimalSign(unit.choices)).toBe(false)
     expect(readText('4.096', { ...volts, decimalSign: '.' })).toMatchObject({ kind: 'value', value: 4.096 })
+  })
+
+  it('never asks about a text that the program wrote for the value', () => {
+    const { text, value } = startText(4.096, undefined, volts)
+    expect(readShown(text, value, volts)).toMatchObject({ kind: 'value', value: 4.096 })
+    const followed = followOutside({ text: '5', value: 5, given: undefined }, 4.096, undefined, volts)
+    expect(readShown(followed.text, followed.value, volts)).toMatchObject({ kind: 'value', value: 4.096 })
+    expect(readShown('4.096', 5, volts)).toMatchObject({ kind: 'refused' })
+    expect(readShown('4,096', 4.096, volts)).toMatchObject({ kind: 'refused' })
   })
 
   it('names the unit behind the field', () => {

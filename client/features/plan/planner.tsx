@@ -1,4 +1,5 @@
 import {
+  memo,
   useCallback,
   useEffect,
   useMemo,
@@ -93,9 +94,7 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
               editing={value.editing}
               stale={stale}
               {...(planning.planned ? { rule: planning.planned.design.rules.room } : {})}
-              onGo={(node, mark) =>
-                goTo(pathOfNode(node, mark.endsWith('limit') ? 'region' : 'signal', lastStage))
-              }
+              onGo={handleGo}
             />
           </div>
         </div>

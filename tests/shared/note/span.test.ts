@@ -61,4 +61,28 @@ describe('least room', () => {
     })
     expect(findLeastRoom([])).toBeNull()
   })
+
+  it('says which limit of the pin is near where the sensor sees it the other way round', () => {
+    const entry = sampleCandidate.headroom?.[0]
+    if (!entry) throw new Error('the sample has no headroom')
+    const sensor = {
+      ...node({ low: 0, high: 1 }, { low: -1, high: 9 }),
+      node: 'sensor',
+      room: { low: 0.01, high: 0.5 },
+      roomAt: { low: 'U1 output', high: 'U1 output' },
+    }
+    const pin = { ...entry, pin: 'U1 output' }
+    const inverting = [{ ...pin, worstClipsAt: { low: 9, high: -1 } }]
+    const following = [{ ...pin, worstClipsAt: { low: -1, high: 9 } }]
+    expect(findLeastRoom([sensor], inverting)).toMatchObject({
+      side: 'low',
+      pin: 'U1 output',
+      pinSide: 'high',
+    })
+    expect(findLeastRoom([sensor], following)).toMatchObject({
+      side: 'low',
+      pin: 'U1 output',
+      pinSide: 'low',
+    })
+  })
 })

@@ -100,6 +100,17 @@ describe('reading a quantity', () => {
     expect(read(text, unit)).toMatchObject({ ok: true, value, tolerance })
   })
 
+  it.each([
+    ['1 kV', 'Ω', '1 kΩ', 1000],
+    ['2.2 mA', 'V', '2.2 mV', 0.0022],
+    ['5 kΩ', 'V', '5 kV', 5000],
+  ])('keeps the prefix of %s where the unit does not fit %s', (text, unit, label, value) => {
+    const result = read(text, unit)
+    if (result.ok) throw new Error('it was taken')
+    expect(result.choices).toEqual([{ label: label.replace(' ', '\u00a0'), value }])
+    expect(result.reason).toContain(label.replace(' ', '\u00a0'))
+  })
+
   it('never takes a tolerance letter that is glued to a bare prefix', () => {
     expect(read('10nK', 'F')).toMatchObject({ ok: false })
     expect(read('10kF', 'Ω')).toMatchObject({ ok: false })

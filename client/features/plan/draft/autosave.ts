@@ -29,10 +29,12 @@ export type SaveAnswer =
 export interface AutosaveOptions {
   version: number
   savedAt: string
+  /** What somebody else saved before this page began, where work of ours from before still waits. */
+  conflict?: Theirs | null
   /** Sends one document, based on one version. Never throws: what went wrong is an answer. */
   send(document: DraftDocument, version: number): Promise<SaveAnswer>
   onState(state: SaveState): void
-  /** The version that the server now holds, for what is kept in this browser. */
+  /** The version that the draft is now based on, for what is kept in this browser. */
   onVersion?(version: number): void
   now?: () => Date
   /** Pause after the last keystroke, ms. */
@@ -62,7 +64,7 @@ export function createAutosave(options: AutosaveOptions): Autosave {
   let version = options.version
   let pending: DraftDocument | null = null
   let sending: Promise<void> | null = null
-  let conflict: Theirs | null = null
+  let conflict: Theirs | null = options.conflict ?? null
   let tries = 0
   let offlineSince: string | null = null
   let timer: ReturnType<typeof setTimeout> | undefined
@@ -109,6 +111,9 @@ export function createAutosave(options: AutosaveOptions): Autosave {
       if (!stopped) later(RETRIES[Math.min(tries, RETRIES.length - 1)] ?? 30000)
       tries += 1
     } else if (answer.kind === 'conflict') {
+      // The server did answer. The version stays the one that ours is based on until a person has decided.
+      offlineSince = null
+      tries = 0
       conflict = answer.theirs
       state({ kind: 'conflict', theirs: answer.theirs })
     } else {
@@ -117,7 +122,7 @@ export function createAutosave(options: AutosaveOptions): Autosave {
     }
   }
 
-  state({ kind: 'saved', at: options.savedAt })
+  state(conflict ? { kind: 'conflict', theirs: conflict } : { kind: 'saved', at: options.savedAt })
 
   return {
     change(document) {
@@ -136,6 +141,7 @@ export function createAutosave(options: AutosaveOptions): Autosave {
       if (!conflict) return
       version = conflict.version
       conflict = null
+      options.onVersion?.(version)
       void run()
     },
     takeTheirs() {

@@ -31,8 +31,23 @@ const rules: Readonly<Record<string, Rule>> = {
   'choose.filter.kind': (value) => (value === 'rc' ? [] : [drop('choose.filter.corner')]),
 }
 
-export const companionsOf = (path: string, value: unknown, document: DraftDocument): Change[] =>
-  rules[path]?.(value, document) ?? []
+/** `inUse`: the arrangement that the plan stands on at present, where there is one. */
+export const companionsOf = (
+  path: string,
+  value: unknown,
+  document: DraftDocument,
+  inUse?: string,
+): Change[] =>
+  rules[path]?.(value, document) ?? (path.startsWith(VALUES) ? keepArrangement(value, document, inUse) : [])
+
+const VALUES = 'choose.values.'
+
+/** A value belongs to the arrangement that it is fixed for: the plan must not take another one on its account. */
+function keepArrangement(value: unknown, document: DraftDocument, inUse: string | undefined): Change[] {
+  if (value === undefined || inUse === undefined || getAt(document, 'choose.arrangement') !== undefined)
+    return []
+  return [{ path: 'choose.arrangement', value: inUse }, drop('choose.pick')]
+}
 
 /** Fields that do not apply as the draft stands; they are left out of the form unless something stands in them. */
 export function appliesTo(path: string, document: DraftDocument): boolean {

@@ -30,6 +30,8 @@ export interface SchemaFieldProps {
   unit?: string
   /** Of a choice: those that can be meant here. */
   only?: readonly string[]
+  /** Why a number that can be read is not taken into the design; null where it is. */
+  refuse?(value: number): string | null
   /** Groups inside groups are not ruled off again. */
   nested?: boolean
 }
@@ -86,6 +88,7 @@ function NumberField({
   width,
   series,
   unit: given,
+  refuse,
 }: SchemaFieldProps) {
   const field = useField(path)
   const { quantity, state, sensorKind } = usePlanner()
@@ -113,9 +116,14 @@ function NumberField({
       {...(width ? { width } : {})}
       {...(series ? { standardSeries: series } : {})}
       {...(field.error ? { error: field.error } : {})}
+      {...(refuse ? { check: refuse } : {})}
       {...(preset ? { placeholder: preset } : {})}
       hint={hint ?? (isOpen ? 'Open' : undefined)}
-      onChange={(value, text) => field.type(value ?? undefined, text, name)}
+      onChange={(value, text) => {
+        const reason = value === null ? null : (refuse?.(value) ?? null)
+        if (reason === null) field.type(value ?? undefined, text, name)
+        else field.misread(text, reason, name)
+      }}
       onInvalid={(text, reason) => field.misread(text, reason, name)}
       onFocus={field.enter}
       onBlur={field.leave}

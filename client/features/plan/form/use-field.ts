@@ -9,7 +9,7 @@ import { fieldAt, type FieldSpec } from './introspect.ts'
 
 /** A key of the design as a control needs it: what it is, what stands in it, what is wrong with it. */
 export function useField(path: string) {
-  const { state, dispatch, faults, sensorKind, readOnly, setEditing } = usePlanner()
+  const { state, dispatch, faults, sensorKind, readOnly, setEditing, candidate } = usePlanner()
   const spec: FieldSpec = useMemo(() => fieldAt(path, sensorKind), [path, sensorKind])
   const fault = faults.get(path)
   return {
@@ -26,7 +26,7 @@ export function useField(path: string) {
         value,
         text,
         label,
-        also: companionsOf(path, value, state.document),
+        also: companionsOf(path, value, state.document, candidate?.arrangement),
       }),
     misread: (text: string, reason: string, label: string) =>
       dispatch({ type: 'misread', path, text, reason, label }),

@@ -31,8 +31,8 @@ export function ConflictNotice({ theirs, mine, onKeepMine, onTakeTheirs }: Confl
         <Button aria-expanded={open} onClick={() => setOpen(!open)}>
           Compare ({differences.length})
         </Button>
-        <Button onClick={onKeepMine}>Keep mine</Button>
-        <Button onClick={onTakeTheirs}>Take theirs</Button>
+        <Button onClick={onKeepMine}>Use my figures</Button>
+        <Button onClick={onTakeTheirs}>Use the saved figures</Button>
       </div>
       {open && (
         <table className="plan-table">

@@ -81,8 +81,9 @@ function FindingItem({ finding }: { finding: ShownFinding }) {
   )
 }
 
-/** How many findings ask for work, in one line: for narrow pages and the page's title. */
+/** How many findings ask for work, else how many are for information, in one line. */
 export function findingsInShort(findings: readonly ShownFinding[]): string {
   const count = pressing(findings).length
-  return count === 0 ? 'No findings' : count === 1 ? '1 finding' : `${count} findings`
+  if (count > 0) return count === 1 ? '1 finding' : `${count} findings`
+  return findings.length === 0 ? 'No findings' : `${findings.length} to note`
 }

@@ -2,8 +2,22 @@ import { ApiError, call, messageOf } from '#client/lib/api-client.ts'
 import { createStore, type Store } from '#client/lib/store.ts'
 import { channelsApi, staleChannelSchema, type Channel } from '#shared/api/channels.ts'
 import type { DesignDocument } from '#shared/design/schema.ts'
-import { createAutosave, type Autosave, type SaveAnswer, type SaveState } from '../draft/autosave.ts'
-import { forgetUnsaved, keepUnsaved, readUnsaved } from '../draft/unsaved-storage.ts'
+import {
+  createAutosave,
+  type Autosave,
+  type SaveAnswer,
+  type SaveState,
+  type Theirs,
+} from '../draft/autosave.ts'
+import { compareDrafts } from '../draft/compare.ts'
+import { tabId } from '../draft/tab-id.ts'
+import {
+  forgetUnsaved,
+  keepUnsaved,
+  readUnsaved,
+  sweepUnsaved,
+  unsavedKey,
+} from '../draft/unsaved-storage.ts'
 import { misreadFields } from '../draft/draft-state.ts'
 import type { DraftDocument } from '../draft/paths.ts'
 import { createPlanSession, type PlanSession } from './plan-session.ts'
@@ -12,7 +26,7 @@ export interface ChannelSession extends PlanSession {
   channelId: string
   saving: Store<SaveState>
   autosave: Autosave
-  /** Version that the server holds, as far as is known here. */
+  /** Version that the draft is based on. */
   version(): number
   /** Ends a conflict with the other person's version. */
   takeTheirs(): void
@@ -25,6 +39,13 @@ export interface ChannelPlace {
 }
 
 const asDraft = (document: DesignDocument): DraftDocument => ({ ...document })
+
+const theirsOf = (channel: Channel): Theirs => ({
+  document: asDraft(channel.document),
+  version: channel.version,
+  by: channel.updatedBy?.name ?? 'Somebody',
+  at: channel.updatedAt,
+})
 
 const sessions = new Map<string, ChannelSession>()
 
@@ -52,23 +73,34 @@ export function channelSession(
 }
 
 function open(channel: Channel, place: ChannelPlace, onSaved: (channel: Channel) => void): ChannelSession {
-  const unsaved = readUnsaved(localStorage, channel.id)
+  sweepUnsaved(localStorage)
+  const key = unsavedKey(channel.id, tabId())
+  const unsaved = readUnsaved(localStorage, key)
+  // What the server has by now, as on a save while the page was being left, does not wait any more.
+  const waiting =
+    unsaved?.document && compareDrafts(unsaved.document, asDraft(channel.document)).length > 0
+      ? { ...unsaved, document: unsaved.document }
+      : null
+  const overtaken = waiting !== null && (waiting.conflict || waiting.version < channel.version)
   const session = createPlanSession(asDraft(channel.document), unsaved?.typed)
   const saving = createStore<SaveState>({ kind: 'saved', at: channel.updatedAt })
-  let version = channel.version
+  let version = waiting?.version ?? channel.version
   let stored = session.draft.getState().document
+
+  const isConflict = () => saving.get().kind === 'conflict'
 
   /** What the server does not have stays in this browser until it has it. */
   const keep = () => {
     const { document, typed } = session.draft.getState()
     const waits = document === stored ? null : document
-    if (waits === null && misreadFields(typed).length === 0) forgetUnsaved(localStorage, channel.id)
-    else keepUnsaved(localStorage, channel.id, { document: waits, typed, version })
+    if (waits === null && misreadFields(typed).length === 0) forgetUnsaved(localStorage, key)
+    else keepUnsaved(localStorage, key, { document: waits, typed, version, conflict: isConflict() })
   }
 
   const autosave = createAutosave({
-    version: unsaved?.document ? unsaved.version : channel.version,
+    version,
     savedAt: channel.updatedAt,
+    conflict: overtaken ? theirsOf(channel) : null,
     async send(document, base) {
       const answer = await send(document, base, place, onSaved)
       if (answer.kind === 'saved') stored = document
@@ -76,10 +108,12 @@ function open(channel: Channel, place: ChannelPlace, onSaved: (channel: Channel)
     },
     onState: (state) => {
       saving.set(state)
-      if (state.kind === 'saved') keep()
+      // While more is to come, the change itself has just been kept.
+      if (state.kind !== 'waiting') keep()
     },
     onVersion: (next) => {
       version = next
+      keep()
     },
   })
 
@@ -92,10 +126,10 @@ function open(channel: Channel, place: ChannelPlace, onSaved: (channel: Channel)
     autosave.change(document)
   })
   // What could not be sent before the page was closed comes back as an edit of its own.
-  if (unsaved?.document && JSON.stringify(unsaved.document) !== JSON.stringify(channel.document))
+  if (waiting)
     session.draft.dispatch({
       type: 'replace',
-      document: unsaved.document,
+      document: waiting.document,
       label: 'What was not saved before',
     })
 
@@ -142,16 +176,7 @@ function toAnswer(error: unknown): SaveAnswer {
   if (error.code === 'stale_version') {
     const stale = staleChannelSchema.safeParse(error.body)
     if (stale.success) {
-      const { current } = stale.data
-      return {
-        kind: 'conflict',
-        theirs: {
-          document: asDraft(current.document),
-          version: current.version,
-          by: current.updatedBy?.name ?? 'Somebody',
-          at: current.updatedAt,
-        },
-      }
+      return { kind: 'conflict', theirs: theirsOf(stale.data.current) }
     }
   }
   if (

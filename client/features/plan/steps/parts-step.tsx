@@ -1,5 +1,4 @@
 import { TextButton } from '#client/components/buttons.tsx'
-import { isInSeries, nearest } from '#shared/parts/series.ts'
 import type { Component } from '#shared/design/plan.ts'
 import type { ResistorSeries } from '#shared/design/schema.ts'
 import { share } from '#shared/note/figures.ts'
@@ -9,6 +8,7 @@ import { getAt } from '../draft/paths.ts'
 import { fieldAt, leavesOf } from '../form/introspect.ts'
 import { SchemaField } from '../form/schema-field.tsx'
 import { usePlanner } from '../planner-context.tsx'
+import { fixedRefs, nearestOther, refusedPart } from '../words/fixed-parts.ts'
 import { fieldId } from '../words/steps.ts'
 import { PickTable } from './pick-table.tsx'
 import { Fields, FoldedFields, NotYet, StepHead, TableRegion } from './step-parts.tsx'
@@ -36,9 +36,19 @@ export function PartsStep() {
 }
 
 function PartsTable() {
-  const { candidate } = usePlanner()
+  const { state, dispatch, candidate, readOnly } = usePlanner()
   const parts = (candidate?.components ?? []).filter((part) => !part.fixed)
-  if (parts.length === 0) return <NotYet>The parts are listed once an arrangement fits.</NotYet>
+  const fixed = fixedRefs(state.document)
+  // What is fixed can always be freed, also where nothing fits because of it.
+  const others = fixed.filter((ref) => !parts.some((part) => part.ref === ref))
+  const freeAll = () =>
+    dispatch({
+      type: 'set',
+      changes: [{ path: 'choose.values', value: undefined }],
+      label: 'All parts freed',
+    })
+  if (parts.length + others.length === 0)
+    return <NotYet>The parts are listed once an arrangement fits.</NotYet>
   return (
     <TableRegion label="Parts and their values">
       <table className="plan-table parts-table" id={fieldId('choose.values')}>
@@ -60,8 +70,22 @@ function PartsTable() {
           {parts.map((part) => (
             <PartRow key={part.ref} part={part} />
           ))}
+          {others.map((ref) => (
+            <tr key={ref}>
+              <th scope="row">{ref}</th>
+              <td>{candidate ? 'Not in this arrangement' : 'No arrangement fits'}</td>
+              <td />
+              <td />
+              <td className="fix">
+                <FixField part={{ ref }} unit={/^C/i.test(ref) ? 'F' : 'Ω'} />
+              </td>
+            </tr>
+          ))}
         </tbody>
       </table>
+      {fixed.length > 0 && readOnly === null && (
+        <TextButton onClick={freeAll}>Free all fixed parts</TextButton>
+      )}
     </TableRegion>
   )
 }
@@ -86,13 +110,13 @@ function PartRow({ part }: { part: Component }) {
 }
 
 /** Typing a value fixes the part; emptying the field hands it back to the plan. */
-function FixField({ part, unit }: { part: Component; unit: 'Ω' | 'F' }) {
+function FixField({ part, unit }: { part: Pick<Component, 'ref' | 'value'>; unit: 'Ω' | 'F' }) {
   const { state, planning, dispatch, readOnly } = usePlanner()
   const path = `choose.values.${part.ref}`
   const fixed = getAt(state.document, path)
   const parts = planning.planned?.design.parts
   const series: ResistorSeries | undefined = unit === 'F' ? parts?.capacitors.series : parts?.resistors.series
-  const odd = typeof fixed === 'number' && series !== undefined && !isInSeries(fixed, series)
+  const near = typeof fixed === 'number' && series ? nearestOther(fixed, series) : null
   return (
     <span className="fix-field">
       <SchemaField
@@ -103,8 +127,9 @@ function FixField({ part, unit }: { part: Component; unit: 'Ω' | 'F' }) {
         absent={part.value === undefined ? 'by the plan' : toRkm(part.value, unit)}
         width={9}
         {...(series ? { series } : {})}
+        refuse={(value) => refusedPart(value, unit)}
       />
-      {typeof fixed === 'number' && readOnly === null && (
+      {fixed !== undefined && readOnly === null && (
         <TextButton
           onClick={() =>
             dispatch({ type: 'set', changes: [{ path, value: undefined }], label: `${part.ref} freed` })
@@ -113,9 +138,9 @@ function FixField({ part, unit }: { part: Component; unit: 'Ω' | 'F' }) {
           Free<span className="sr-only"> {part.ref}</span>
         </TextButton>
       )}
-      {odd && series && (
+      {near !== null && (
         <small>
-          Not in {series}; nearest {toRkm(nearest(fixed, series), unit)}
+          Not in {series}; nearest {toRkm(near, unit)}
         </small>
       )}
     </span>

@@ -239,7 +239,8 @@ function Equations({ candidate }: { candidate: Candidate | null }) {
       </dl>
       {realised && (
         <p className="field-note">
-          Codes {count(realised.codes.low)} to {count(realised.codes.high)}, {count(realised.codesUsed)} used.
+          Codes {count(realised.codes.low)} to {count(realised.codes.high)},{' '}
+          {count(Math.floor(realised.codesUsed))} used.
         </p>
       )}
     </section>
