@@ -11,6 +11,8 @@ const SMALLEST_SPAN = 1e-9
 const SMALLEST_SHARE = 1e-9
 /** Most decades of a window: beyond, the pairs of values no longer fit into memory. */
 const MOST_DECADES = 8
+/** Values that parts come in: beyond, a network of them has no answer in double precision. Ω and F. */
+const PARTS = { Ω: [1e-3, 1e12], F: [1e-15, 1] } as const
 /** Largest bias current that any input carries, A. */
 const MOST_BIAS = 1
 
@@ -24,6 +26,8 @@ export function crossFaults(design: Design): Fault[] {
   partFaults(design, add)
   if (design.temperature.low > design.temperature.high)
     add('temperature.high', 'the temperature range is reversed', `${design.temperature.low} or more, in °C`)
+  for (const [ref, value] of Object.entries(design.choose.values ?? {}))
+    partValue(`choose.values.${ref}`, /^C/i.test(ref) ? 'F' : 'Ω', value, add)
   const refs = design.choose.stages?.map((stage) => stage.ref) ?? []
   if (new Set(refs).size < refs.length)
     add('choose.stages', 'one stage is described twice', 'one entry for each of S1 and S2')
@@ -201,12 +205,22 @@ function partFaults({ parts, temperature }: Design, add: Add): void {
     )
 }
 
+/** A value that no part has. */
+function partValue(path: string, unit: 'Ω' | 'F', value: number, add: Add): void {
+  const [least, most] = PARTS[unit]
+  if (value < least || value > most)
+    add(path, `no part has ${value} ${unit}`, `a number from ${least} up to ${most}, in ${unit}`)
+}
+
 function windowFaults(
   path: string,
-  unit: string,
-  { minimum, maximum }: { minimum: number; maximum: number },
+  unit: 'Ω' | 'F',
+  { minimum, maximum, stock }: { minimum: number; maximum: number; stock: number[] },
   add: Add,
 ): void {
+  stock.forEach((value, at) => partValue(`${path}.stock[${at}]`, unit, value, add))
+  partValue(`${path}.minimum`, unit, minimum, add)
+  partValue(`${path}.maximum`, unit, maximum, add)
   if (minimum > maximum)
     return add(`${path}.maximum`, 'the window of values is reversed', `${minimum} or more, in ${unit}`)
   if (Math.log10(maximum / minimum) > MOST_DECADES)

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { findingsInShort } from '#client/features/plan/frame/findings-column.tsx'
 import { listFindings, pressing, splitHeadline, toDraftPath } from '#client/features/plan/words/findings.ts'
 import { answerSteps } from '#client/features/plan/words/step-answers.ts'
 import { stepOfPath, steps } from '#client/features/plan/words/steps.ts'
@@ -78,6 +79,22 @@ describe('findings', () => {
 
   it('read list items of a path as the draft writes them', () => {
     expect(toDraftPath('choose.stages[0].gain')).toBe('choose.stages.0.gain')
+  })
+})
+
+describe('the head of a narrow page', () => {
+  const note = {
+    key: 'a',
+    severity: 'caution' as const,
+    title: 'Clamp current',
+    text: '',
+    path: null,
+    step: 'errors' as const,
+  }
+  it('counts what asks for work, else what is to be noted', () => {
+    expect(findingsInShort([])).toBe('No findings')
+    expect(findingsInShort([note, { ...note, key: 'b' }])).toBe('2 to note')
+    expect(findingsInShort([note, { ...note, key: 'b', severity: 'tight' }])).toBe('1 finding')
   })
 })
 

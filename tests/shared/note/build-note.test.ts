@@ -47,14 +47,22 @@ describe('answers of the first sheet', () => {
   })
 
   it('turns the worst-case error at the converter into the measurand, rounded up', () => {
-    // 3.87 mV over (2.4505 − 0.0501) V / 5 m/s = 8.0611 mm/s.
-    expect(plain(error?.figure)).toBe('±8.1 mm/s')
+    // 3.87 mV of tolerances and 0.5 mV of the nominal end over (2.4505 − 0.0501) V / 5 m/s = 9.1026 mm/s.
+    expect(plain(error?.figure)).toBe('±9.2 mm/s')
+    expect(plain(error?.small[0])).toContain('miss the end points by 1.1 mm/s')
   })
 
   it('gives one code in the measurand and the codes used', () => {
     // 2.5 V/2^14 over 0.48008 V/(m/s) = 317.84 μm/s.
     expect(plain(code?.figure)).toBe('318 μm/s')
     expect(plain(code?.small[0])).toBe('15 732 of 16 384 codes used')
+  })
+
+  it('counts only whole codes as used', () => {
+    const realised = sampleCandidate.realised && { ...sampleCandidate.realised, codesUsed: 15732.9 }
+    const plan = { ...samplePlan, candidates: [{ ...sampleCandidate, ...(realised ? { realised } : {}) }] }
+    const answers = buildNote({ document: sampleDocument, plan, context: sampleContext }).first.answers
+    expect(plain(answers[3]?.small[0])).toBe('15 732 of 16 384 codes used')
   })
 
   it('does not say that more codes are used than there are', () => {
@@ -315,6 +323,15 @@ describe.each(readdirSync('docs/examples').filter((file) => file.endsWith('.json
     expect(note.first.answers).toHaveLength(4)
     expect(JSON.stringify(note)).not.toMatch(/NaN|undefined|Infinity|\[object/)
     for (const answer of note.first.answers) expect(answer.figure).toMatch(/\d/)
+  })
+
+  it('calls the references by name in its tables, not by node', () => {
+    expect(JSON.stringify(tables(note))).not.toMatch(/vadcref|vref/)
+    const loads = plan.candidates[plan.chosen ?? 0]?.loads ?? []
+    const named = tables(note).find((table) => table.columns[0]?.title === 'Source')
+    expect(named?.rows.map((row) => row.cells[0]) ?? []).toEqual(
+      loads.map(({ node }) => (node === 'vadcref' ? 'Converter reference' : 'Shift reference')),
+    )
   })
 
   it('agrees with the plan about the least room', () => {

@@ -84,7 +84,7 @@ describe.each(Object.keys(formMakers))('%s', (name) => {
           }
         },
       ),
-      { numRuns: 40 },
+      { numRuns: 100 },
     )
   })
 

@@ -168,7 +168,7 @@ describe('reading a quantity', () => {
 
   it.each([
     ['5 A', 'V', 'a current', 'a voltage'],
-    ['5 mΩ', 'V', 'a resistance', 'a voltage'],
+    ['5 Ω', 'V', 'a resistance', 'a voltage'],
     ['5 V', 'Ω', 'a voltage', 'a resistance'],
     ['4700F', 'Ω', 'a capacitance', 'a resistance'],
     ['3 Hz', 's', 'a frequency', 'a time'],
