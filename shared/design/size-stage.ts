@@ -98,6 +98,7 @@ export function sizeStage(
   const free = anyFixed ? search({}) : null
   const result = allFixed ? null : search(given)
   const found = allFixed ? [exactly(form, target, given)] : foundIn(result)
+  const reached = allFixed ? withoutGainLimits(form) : form
   if (found.length === 0 || (result?.ok === false && !anyFixed))
     return { ok: false, reason: outsideWindow(design, found[0]) }
   const index = Math.min(pick, found.length - 1)
@@ -115,7 +116,7 @@ export function sizeStage(
       optimum: best ? { error: best.optimum, toleranceError: best.toleranceError } : null,
       wanted: wantedValues(form, sizing, target, taken.values, refs),
       chosen: Object.keys(fixed),
-      ends: evaluateForm(form, taken.values),
+      ends: evaluateForm(reached, taken.values),
     },
   }
 }
@@ -123,9 +124,13 @@ export function sizeStage(
 const foundIn = (result: PickResult | null): Pick[] =>
   !result ? [] : result.ok ? merge(result.picks, result.best) : result.closest ? [result.closest] : []
 
+/** A part that is driven past the gains it is specified for still has the gain of its resistor. */
+const withoutGainLimits = (form: ValueForm): ValueForm =>
+  form.kind === 'gain-single' ? { ...form, gainMinimum: -Infinity, gainMaximum: Infinity } : form
+
 /** The one set of values that is left when a person fixed them all. */
 function exactly(form: ValueForm, target: [number, number], values: Record<string, number>): Pick {
-  const ends = evaluateForm(form, values)
+  const ends = evaluateForm(withoutGainLimits(form), values)
   const span = Math.abs(target[1] - target[0])
   return {
     values,

@@ -1,3 +1,4 @@
+import { COST } from './cost.ts'
 import type { Pair } from './forms.ts'
 import { pairAllowed, type PairBounds, type PairTable } from './pair-table.ts'
 import type { IdealRatio, Lines } from './problem.ts'
@@ -79,6 +80,7 @@ export class Search {
 
   /** Ratios of the first pair from their sorted table, outward from the ideal one. */
   private walkTable(table: PairTable): void {
+    const { first, slots } = this.task
     const { index, ratios, starts, least } = table
     const { list } = this
     const [low, high, connected] = this.idealInterval(list.limit)
@@ -92,7 +94,7 @@ export class Search {
           if (connected) break
           continue
         }
-        at[LEAST] = least[i] as number
+        at[LEAST] = (least[i] as number) + pairCost(slots, first, ratios[i] as number)
         if (!list.hopeless(at[LEAST], 0)) this.visitSecond(starts[i] as number, starts[i + 1] as number)
       }
     }
@@ -401,8 +403,19 @@ function factorBand(limit: number): Pair {
   return [least, most]
 }
 
-/** What the two values of a member cost by themselves. */
+/** The least that a pick with this member of the first pair costs: its two values, and their being two. */
 function memberCost(slots: Slots, members: Members, member: number): number {
-  const upper = (slots.costs[members.upperSlot] as Float64Array)[upperOf(members, member)] as number
-  return upper + ((slots.costs[members.lowerSlot] as Float64Array)[lowerOf(members, member)] as number)
+  const { upperSlot, lowerSlot } = members
+  const upper = upperOf(members, member)
+  const lower = lowerOf(members, member)
+  const a = (slots.values[upperSlot] as Float64Array)[upper] as number
+  const b = (slots.values[lowerSlot] as Float64Array)[lower] as number
+  const own = (slots.costs[upperSlot] as Float64Array)[upper] as number
+  return own + ((slots.costs[lowerSlot] as Float64Array)[lower] as number) + pairCost(slots, members, a / b)
+}
+
+/** Two resistors of different value are two distinct values; a link, an open place, or what is no part is none. */
+function pairCost(slots: Slots, members: Members, ratio: number): number {
+  const parts = members.upperSlot < slots.refs.length && members.lowerSlot < slots.refs.length
+  return parts && ratio > 0 && ratio < Infinity && ratio !== 1 ? COST.distinct : 0
 }

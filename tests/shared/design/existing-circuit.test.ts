@@ -55,6 +55,18 @@ describe('a circuit with every value fixed', () => {
   })
 })
 
+it('a part driven past its largest gain is analysed all the same', () => {
+  const chosen = planChosen(
+    buildDesign({
+      sensor: buildDifferentialSensor(-1e-6, 1e-6),
+      parts: { instrumentation: { gainMaximum: 1000 } },
+      choose: { arrangement: 'integrated-instrumentation-grounded', values: { Rg: 25 } },
+    }),
+  )
+  const { low, high } = chosen.realised.ideal
+  expectClose((high - low) / 2e-6, 1 + 50000 / 25, { relative: 1e-6 })
+})
+
 describe('a circuit with some values fixed', () => {
   it('has the rest picked from the series, to the smallest error that they leave', () => {
     const values = { R1: 12345, Rg: 9999 }

@@ -157,6 +157,30 @@ const outOfRange: Row[] = [
   ],
 ]
 
+const parts: Row[] = [
+  [
+    'a fixed resistor of next to nothing',
+    withValue('choose.values', { R1: 1e-9 }),
+    'choose.values.R1',
+    /no part has 1e-9 Ω/,
+    /from 0.001 up to/,
+  ],
+  [
+    'a fixed capacitor of a hundred farads',
+    withValue('choose.values', { C9: 100 }),
+    'choose.values.C9',
+    /no part has 100 F/,
+    /up to 1, in F/,
+  ],
+  [
+    'an absurd resistor in stock',
+    withValue('parts.resistors.stock', [1000, 1e14]),
+    'parts.resistors.stock[1]',
+    /no part has/,
+    /in Ω/,
+  ],
+]
+
 const spans: Row[] = [
   [
     'a measurand without span',
@@ -263,7 +287,7 @@ const reversed: Row[] = [
   ],
   [
     'a window of resistors without end',
-    withValue('parts.resistors', { minimum: 1e-300, maximum: 1e15 }),
+    withValue('parts.resistors', { minimum: 0.01, maximum: 1e9 }),
     'parts.resistors.minimum',
     /more than 8 decades/,
     /in Ω/,
@@ -545,7 +569,7 @@ describe.each([
   ['references and wiring', references],
   ['shape', shapes],
   ['notes', notes],
-  ['parts', currents],
+  ['parts', [...parts, ...currents]],
 ])('a document with wrong %s', (_, rows) => {
   it.each(rows)(
     'is refused for %s: path, reason and what is accepted',
