@@ -1,6 +1,5 @@
 import type { Ends, Equation, Reason } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
-import type { SensorSignal } from '#shared/sensors/kinds/define.ts'
 import type { ValueForm } from './picker/index.ts'
 import type { StageBuilder } from './stage-builder.ts'
 
