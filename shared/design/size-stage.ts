@@ -281,7 +281,7 @@ function outsideWindow(design: Design, closest: Pick | undefined): Reason {
   const { minimum, maximum, stock } = design.parts.resistors
   const set =
     stock.length > 0
-      ? `the ${stock.length} values in stock`
+      ? `the ${stock.length === 1 ? 'one value' : `${stock.length} values`} in stock`
       : `resistors from ${formatQuantity(minimum, 'Ω')} to ${formatQuantity(maximum, 'Ω')}`
   const miss = closest
     ? ` The closest set misses an end point by ${formatQuantity(closest.error, '', { digits: 3, display: 'percent' })} of the span.`
