@@ -82,7 +82,7 @@ const refused: Row[] = [
     'integrated-instrumentation',
     'outside-window',
     twoWires(-0.02, 0.02, { parts: { resistors: { stock: [1e6] }, instrumentation: { gainMinimum: 10 } } }),
-    /the 1 values? in stock/,
+    /the one value in stock/,
     {},
   ],
   [
