@@ -2,7 +2,7 @@ import { z } from 'zod'
 import type { Fault } from '#shared/design/plan.ts'
 import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
-import { accuracyVariables, alongLine, commonKeys, legResistance } from './common.ts'
+import { accuracyVariables, addLeg, alongLine, commonKeys, legResistance } from './common.ts'
 import { defineSensor, type SensorContext, type SensorSource } from './define.ts'
 
 const excitationVoltage = () => numberField('Excitation voltage', 'V', { above: 0, max: 100 })
@@ -172,14 +172,7 @@ export const bridge = defineSensor({
     arm('RSENSE3', 'vexc', 'sense_n', r * (1 + x))
     arm('RSENSE4', 'sense_n', '0', r * (1 - x))
     builder.voltageSource({ ref: 'VZERO', p: 'zero_p', n: 'sense_p', value: 0, ac: 1, stage })
-    const leg = legResistance(sensor)
-    const resistors: SensorSource['resistors'] = []
-    const series = (ref: string, from: string, to: string): string => {
-      if (leg.value === 0) return from
-      builder.resistor({ ref, a: from, b: to, value: leg.value, tolerance: leg.relative, stage, fixed: true })
-      if (leg.relative > 0) resistors.push({ ref, relative: leg.relative })
-      return to
-    }
+    const series = (ref: string, from: string, to: string) => addLeg(builder, sensor, ref, from, to)
     const scale = excitation.voltage * delivered(sensor, excitation)
     const ends = {
       low: scale * ratioAt(sensor, sensor.quantity.low),
@@ -215,7 +208,7 @@ export const bridge = defineSensor({
       p: series('RSOURCEP', 'zero_p', 'in_p'),
       n: series('RSOURCEN', 'sense_n', 'in_n'),
       variables,
-      resistors,
+
       follows: excitation.variable === 'excitation' ? [] : [{ variable: excitation.variable, ref: 'VEXC' }],
       signal: { variable: 'signal', ref: 'VZERO' },
     }

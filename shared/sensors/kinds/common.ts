@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import type { NetworkBuilder } from '#shared/network/builder.ts'
 import type { SourceVariable } from '#shared/analysis/extremes.ts'
 import { fraction, lineField, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 
@@ -105,4 +106,18 @@ export function legResistance(sensor: {
   const mismatch =
     sensor.sourceResistance * sensor.sourceMismatch + sensor.leadResistance * sensor.leadMismatch
   return { value, relative: value > 0 ? mismatch / value / 2 : 0 }
+}
+
+/** Adds the resistance of one leg between two nodes, where it has any; returns the node at which the leg ends. */
+export function addLeg(
+  builder: NetworkBuilder,
+  sensor: Parameters<typeof legResistance>[0],
+  ref: string,
+  from: string,
+  to: string,
+): string {
+  const { value, relative } = legResistance(sensor)
+  if (value === 0) return from
+  builder.resistor({ ref, a: from, b: to, value, tolerance: relative, stage: 'source', fixed: true })
+  return to
 }

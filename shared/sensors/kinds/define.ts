@@ -34,8 +34,6 @@ export interface SensorSource {
   p: string
   n: string | null
   variables: SourceVariable[]
-  /** Resistors of the source that have a tolerance box of their own: ref → ± fraction. */
-  resistors: { ref: string; relative: number }[]
   /** Sources of the sensor that follow a shared reference volt for volt. */
   follows: { variable: string; ref: string }[]
   /** The source whose value moves the signal volt for volt; clip points are searched along it. */

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import type { Fault } from '#shared/design/plan.ts'
-import { accuracyVariables, alongLine, commonKeys, legResistance, voltsRange } from './common.ts'
+import { accuracyVariables, addLeg, alongLine, commonKeys, legResistance, voltsRange } from './common.ts'
 import { defineSensor, type SensorSource } from './define.ts'
 
 const schema = z.strictObject({
@@ -96,22 +96,7 @@ export const voltage = defineSensor({
 
   source(sensor, context, builder, quantity): SensorSource {
     const value = alongLine(sensor.quantity, sensor.output, quantity)
-    const leg = legResistance(sensor)
-    const resistors: SensorSource['resistors'] = []
-    const series = (ref: string, from: string, to: string): string => {
-      if (leg.value === 0) return from
-      builder.resistor({
-        ref,
-        a: from,
-        b: to,
-        value: leg.value,
-        tolerance: leg.relative,
-        stage: 'source',
-        fixed: true,
-      })
-      if (leg.relative > 0) resistors.push({ ref, relative: leg.relative })
-      return to
-    }
+    const series = (ref: string, from: string, to: string) => addLeg(builder, sensor, ref, from, to)
     const variables = accuracyVariables(
       sensor.accuracy,
       {
@@ -132,7 +117,7 @@ export const voltage = defineSensor({
     const signal = { variable: 'signal', ref: 'VSENSE' }
     if (sensor.wiring === 'single-ended') {
       builder.voltageSource({ ref: 'VSENSE', p: 'sense', n: '0', value, ac: 1, stage: 'source' })
-      return { p: series('RSOURCE', 'sense', 'in'), n: null, variables, resistors, follows: [], signal }
+      return { p: series('RSOURCE', 'sense', 'in'), n: null, variables, follows: [], signal }
     }
     const range = sensor.commonMode ?? { low: 0, high: 0 }
     const middle = (range.low + range.high) / 2
@@ -153,7 +138,7 @@ export const voltage = defineSensor({
       p: series('RSOURCEP', 'sense_p', 'in_p'),
       n: series('RSOURCEN', 'sense_n', 'in_n'),
       variables,
-      resistors,
+
       follows: [],
       signal,
     }
