@@ -157,6 +157,13 @@ describe('a channel’s draft', () => {
   const bits = (page: Page) => page.locator('#field-converter-bits')
   const saved = (page: Page) => page.locator('.title-block dt', { hasText: /^Saved$/ }).waitFor()
 
+  const keptPositiveRail = (page: Page) =>
+    page.evaluate(async () => {
+      const path = location.pathname.replace(/^\/w\//, '/api/workspaces/').replace(/\/plan\/.*$/, '')
+      const answer = (await (await fetch(path)).json()) as { document: { rails: { positive: number } } }
+      return answer.document.rails.positive
+    })
+
   it('is saved as it is typed', async () => {
     const { page } = first
     await bits(page).fill('13')
@@ -189,6 +196,8 @@ describe('a channel’s draft', () => {
     await expect.poll(() => bits(second.page).inputValue()).toBe('11')
     await second.page.keyboard.press('Control+z')
     await expect.poll(() => second.page.locator('#field-rails-positive').inputValue()).toBe('4.9')
+    // The next test must not open the channel before this change has reached the server.
+    await expect.poll(() => keptPositiveRail(second.page), { timeout: 20_000 }).toBe(4.9)
   })
 
   it('keeps typing without connection, says so, and saves when the server answers again', async () => {
