@@ -1,13 +1,14 @@
 import { readFile, writeFile } from 'node:fs/promises'
 import { text } from 'node:stream/consumers'
 import { parseArgs } from 'node:util'
-import type { Fault, Plan } from '#shared/design/plan.ts'
+import type { Fault, IndependentCheck, Plan } from '#shared/design/plan.ts'
 import { planDesign } from '#shared/design/plan-design.ts'
 import { readDesign } from '#shared/design/read.ts'
 import type { DesignDocument } from '#shared/design/schema.ts'
+import { checkChosen, withCheck } from '#shared/studies/check.ts'
 import { draftContext } from './features/note/note-context.ts'
 
-const usage = 'npm run --silent plan -- [design.json] [--spice out.cir] [--pdf note.pdf]'
+const usage = 'npm run --silent plan -- [design.json] [--spice out.cir] [--pdf note.pdf] [--check]'
 
 const exitCode = { feasible: 0, infeasible: 1, refused: 2 } as const
 
@@ -22,6 +23,7 @@ interface Options {
   file: string | null
   spice: string | undefined
   pdf: string | undefined
+  check: boolean
 }
 
 function readOptions(args: string[]): Options {
@@ -29,10 +31,14 @@ function readOptions(args: string[]): Options {
     const { values, positionals } = parseArgs({
       args,
       allowPositionals: true,
-      options: { spice: { type: 'string' }, pdf: { type: 'string' } },
+      options: {
+        spice: { type: 'string' },
+        pdf: { type: 'string' },
+        check: { type: 'boolean', default: false },
+      },
     })
     if (positionals.length > 1) throw new CallRefused(`command: more than one file; accepted: ${usage}`)
-    return { file: positionals[0] ?? null, spice: values.spice, pdf: values.pdf }
+    return { file: positionals[0] ?? null, spice: values.spice, pdf: values.pdf, check: values.check }
   } catch (error) {
     if (error instanceof CallRefused) throw error
     const reason = (error as Error).message.split('. ')[0]
@@ -86,6 +92,40 @@ async function savePdf(file: string, document: DesignDocument, plan: Plan): Prom
   await save(file, await renderNote({ document, plan, context }))
 }
 
+async function checkedPlan(document: DesignDocument): Promise<Plan> {
+  const { openSimulator } = await import('#server/lib/simulator.ts')
+  const plan = planDesign(document)
+  return withCheck(plan, await checkChosen(document, plan, openSimulator()))
+}
+
+/** The check as a table: what, ours, the simulator's, how far apart, how far they may be. */
+function sayCheck(check: IndependentCheck | undefined): void {
+  if (!check) {
+    say('No check: nothing was chosen.')
+    return
+  }
+  const rows = check.lines.map(({ what, unit, ours, spice, difference, allowed, ok }) => [
+    what,
+    String(ours),
+    String(spice),
+    `${difference} ${unit}`,
+    `${allowed} ${unit}`,
+    ok ? 'agrees' : 'DIFFERS',
+  ])
+  const table = [['Figure', 'plan', check.simulator, 'difference', 'allowed', ''], ...rows]
+  const widths = table[0]?.map((_, at) => Math.max(...table.map((row) => row[at]?.length ?? 0))) ?? []
+  for (const row of table)
+    say(
+      row
+        .map((cell, at) => cell.padEnd(widths[at] ?? 0))
+        .join('  ')
+        .trimEnd(),
+    )
+  say(
+    check.ok ? 'The simulator agrees.' : 'The simulator does not agree: a defect of the plan. Do not use it.',
+  )
+}
+
 /** Large plans do not fit a pipe at once: wait until all of it is written. */
 function print(plan: Plan): Promise<void> {
   return new Promise((resolve, reject) => {
@@ -101,9 +141,10 @@ async function run(args: string[]): Promise<number> {
     for (const fault of read.faults) say(faultLine(fault))
     return exitCode.refused
   }
-  const plan = planDesign(read.document)
+  const plan = options.check ? await checkedPlan(read.document) : planDesign(read.document)
   const chosen = plan.chosen === null ? undefined : plan.candidates[plan.chosen]
   await print(plan)
+  if (options.check) sayCheck(chosen?.check)
   if (options.spice !== undefined) {
     if (chosen?.netlist === undefined) say('No netlist: nothing feasible was chosen.')
     else await save(options.spice, chosen.netlist)

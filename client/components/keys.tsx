@@ -50,7 +50,7 @@ export const keyTable: readonly { place: string; keys: readonly { keys: string; 
       { keys: 'S', act: 'signed revision' },
       { keys: 'V', act: 'volts, or share of the region' },
       { keys: 'G', act: 'grid' },
-      { keys: 'L', act: 'next limit' },
+      { keys: 'L', act: 'next limit or mark' },
       { keys: 'T', act: 'table of the drawing' },
     ],
   },

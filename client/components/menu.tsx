@@ -1,5 +1,5 @@
 import { DropdownMenu } from 'radix-ui'
-import type { ReactNode } from 'react'
+import { useState, type ReactNode } from 'react'
 import { Link } from 'react-router-dom'
 import { Chevron } from './select-field.tsx'
 
@@ -19,8 +19,14 @@ interface MenuProps {
 /** A control that opens a list of acts. Not modal: the page behind stays readable and is not hidden from readers. */
 export function Menu(props: MenuProps) {
   const { label, look = 'button', size = 'field', ariaLabel, align = 'start', tabIndex, children } = props
+  const [container, setContainer] = useState<HTMLElement | null>(null)
   return (
-    <DropdownMenu.Root modal={false}>
+    <DropdownMenu.Root
+      modal={false}
+      onOpenChange={(open) => {
+        if (open) setContainer(document.getElementById('menus'))
+      }}
+    >
       <DropdownMenu.Trigger
         className={look === 'button' ? 'button' : 'text-button'}
         data-size={size}
@@ -29,9 +35,7 @@ export function Menu(props: MenuProps) {
       >
         {label} <Chevron />
       </DropdownMenu.Trigger>
-      <DropdownMenu.Portal
-        container={typeof document === 'undefined' ? null : document.getElementById('menus')}
-      >
+      <DropdownMenu.Portal container={container}>
         <DropdownMenu.Content className="menu" align={align} sideOffset={4} collisionPadding={12}>
           {children}
         </DropdownMenu.Content>

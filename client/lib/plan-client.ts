@@ -1,5 +1,6 @@
 import type { Fault, Plan } from '#shared/design/plan.ts'
 import type { Network } from '#shared/network/types.ts'
+import type { Curves } from '#shared/studies/types.ts'
 import type { PlanAnswer, PlanRequest } from './plan-messages.ts'
 
 /** The document is not a design yet; `faults` name the fields. */
@@ -30,7 +31,8 @@ interface Job {
   reject(error: unknown): void
 }
 
-type Question = { ask: 'plan'; document: unknown } | { ask: 'network'; document: unknown; candidate: number }
+type Question =
+  { ask: 'plan'; document: unknown } | { ask: 'network' | 'curves'; document: unknown; candidate: number }
 
 const abortError = () => new DOMException('A newer change replaced this one.', 'AbortError')
 
@@ -112,6 +114,10 @@ export function createPlanClient(openPort: () => PlanPort) {
       const answer = await ask({ ask: 'network', document, candidate }, options)
       return answer.ok && 'network' in answer ? answer.network : refuse(answer)
     },
+    async curves(document: unknown, candidate: number, options: PlanOptions = {}): Promise<Curves> {
+      const answer = await ask({ ask: 'curves', document, candidate }, options)
+      return answer.ok && 'curves' in answer ? answer.curves : refuse(answer)
+    },
   }
 }
 
@@ -129,3 +135,10 @@ export const networkInWorker = (
   candidate: number,
   options: PlanOptions = {},
 ): Promise<Network> => shared.network(document, candidate, options)
+
+/** Response, step, loops and noise of one candidate over frequency and time, for plots. */
+export const curvesInWorker = (
+  document: unknown,
+  candidate: number,
+  options: PlanOptions = {},
+): Promise<Curves> => shared.curves(document, candidate, options)

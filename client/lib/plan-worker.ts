@@ -1,5 +1,6 @@
-import { buildNetworkFor, planDesign } from '#shared/design/plan-design.ts'
+import { buildNetworkFor, planDesign, prepareCandidate } from '#shared/design/plan-design.ts'
 import { DesignRefused } from '#shared/design/read.ts'
+import { computeCurves } from '#shared/studies/curves.ts'
 import type { PlanAnswer, PlanRequest } from './plan-messages.ts'
 
 /** Runs in a worker of its own: one question in, one answer out, nothing remembered between them but the last plan. */
@@ -18,6 +19,12 @@ function answer(request: PlanRequest): PlanAnswer {
     const plan = planOf(request.document)
     if (request.ask === 'plan') return { id, ok: true, plan }
     const candidate = plan.candidates[request.candidate]
+    if (request.ask === 'curves') {
+      const prepared = candidate ? prepareCandidate(request.document, candidate) : null
+      return prepared
+        ? { id, ok: true, curves: computeCurves(prepared.design, prepared.spec) }
+        : { id, ok: false, message: 'There is no circuit to draw curves of for this arrangement.' }
+    }
     const network = candidate ? buildNetworkFor(request.document, candidate) : null
     return network
       ? { id, ok: true, network }

@@ -19,8 +19,8 @@ interface DemoProject {
 
 const format = 'spandrel-design/1' as const
 
-/** The station's board: 12 bits over 0 to 2.5 V with its own reference, one 5 V rail. */
-const board: Pick<DesignDocument, 'converter' | 'rails' | 'temperature'> = {
+/** The station's board: 12 bits over 0 to 2.5 V with its own reference, one 5 V rail; half a percent is allotted. */
+const board: Pick<DesignDocument, 'converter' | 'rails' | 'temperature' | 'target' | 'calibration'> = {
   converter: {
     input: { low: 0, high: 2.5 },
     bits: 12,
@@ -29,10 +29,18 @@ const board: Pick<DesignDocument, 'converter' | 'rails' | 'temperature'> = {
     acquisitionTime: 2e-6,
     samplingCapacitance: 1.5e-11,
     switchResistance: 1000,
+    offsetError: 1e-3,
+    gainError: 5e-4,
+    inl: 1,
+    noise: 1e-4,
+    offsetDrift: 3e-6,
+    gainDrift: 5e-6,
     absolute: { low: -0.3, high: 3.6 },
   },
   rails: { positive: 5, tolerance: 0.02 },
   temperature: { low: -20, high: 55, calibration: 20 },
+  target: { limit: 0.005, per: 'span' },
+  calibration: { standardUncertainty: 3e-4, interval: 2 },
 }
 
 const shiftReference: DesignDocument['shiftReference'] = { same: 'converter' }

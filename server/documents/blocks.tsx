@@ -1,7 +1,15 @@
 import { Text, View } from '@react-pdf/renderer'
-import { Fragment, type ReactNode } from 'react'
+import type { ReactNode } from 'react'
 import { toRuns } from '#shared/note/equation-runs.ts'
-import type { Block, EquationLine, Section, Statement, ValueGroup, ValueRow } from '#shared/note/types.ts'
+import type {
+  Block,
+  EquationLine,
+  FigureName,
+  Section,
+  Statement,
+  ValueGroup,
+  ValueRow,
+} from '#shared/note/types.ts'
 import { toPrintable } from './glyphs.ts'
 import { CautionMark, StateMark, stateColours } from './marks.tsx'
 import { TableView } from './table.tsx'
@@ -33,14 +41,24 @@ export function Heading({ title, aside, id }: HeadingProps): ReactNode {
   )
 }
 
-/** A section with its heading; `figure` is what stands for the transfer figure. */
-export function SectionView({ section, figure }: { section: Section; figure: ReactNode }): ReactNode {
-  // Heading, sentence and figure are one thing; what follows the figure may run on.
-  const together = section.blocks.findIndex((block) => block.type === 'transfer') + 1
+export type Figures = Record<FigureName, ReactNode>
+
+/** A section with its heading; `figures` are what stands for its figure blocks. */
+export function SectionView({ section, figures }: { section: Section; figures: Figures }): ReactNode {
+  const isDrawn = (block: Block) => block.type === 'figure' && figures[block.draws] !== null
+  // Heading, sentence and first figure are one thing where no table stands between; what follows may run on.
+  const first = section.blocks.findIndex(isDrawn)
+  const together = section.blocks.slice(0, first).some((block) => block.type === 'table') ? 0 : first + 1
   const draw = (blocks: readonly Block[]) =>
-    blocks.map((block, index) => (
-      <Fragment key={index}>{block.type === 'transfer' ? figure : <BlockView block={block} />}</Fragment>
-    ))
+    blocks.map((block, index) =>
+      block.type === 'figure' ? (
+        <View key={index} wrap={false}>
+          {figures[block.draws]}
+        </View>
+      ) : (
+        <BlockView key={index} block={block} />
+      ),
+    )
   const heading = <Heading title={section.title} aside={section.aside} id={section.id} />
   if (together === 0)
     return (
@@ -80,7 +98,7 @@ function linesOf(block: Block): number {
       return block.items.length * 2
     case 'equations':
       return block.items.length * 3
-    case 'transfer':
+    case 'figure':
     case 'values':
       return SHORT + 1
     case 'code':
@@ -90,7 +108,7 @@ function linesOf(block: Block): number {
   }
 }
 
-function BlockView({ block }: { block: Exclude<Block, { type: 'transfer' }> }): ReactNode {
+function BlockView({ block }: { block: Exclude<Block, { type: 'figure' }> }): ReactNode {
   switch (block.type) {
     case 'text':
       return <Print style={styles.paragraph}>{block.text}</Print>

@@ -3,6 +3,11 @@ import { buildNetworkFor } from '#shared/design/plan-design.ts'
 import type { Candidate, Level, Plan } from '#shared/design/plan.ts'
 import { designSchema, type Design, type DesignDocument } from '#shared/design/schema.ts'
 import { layoutLevelDiagram } from '#shared/drawings/level-diagram.ts'
+import { layoutCurvePlot } from '#shared/drawings/curve-plot.ts'
+import { noisePlot, responsePlot, type NamedPlot } from '#shared/drawings/curve-inputs.ts'
+import { errorBars, layoutErrorChart } from '#shared/drawings/error-chart.ts'
+import { layoutSpreadPlot } from '#shared/drawings/spread-plot.ts'
+import type { Curves, Spread } from '#shared/studies/types.ts'
 import type { Box, Shape } from '#shared/drawings/shapes.ts'
 import { textBox } from '#shared/drawings/text-width.ts'
 import { noteMeasures } from '#shared/drawings/level-scale.ts'
@@ -23,25 +28,71 @@ const SCHEMATIC_PX = { A4: 190, Letter: 150 } as const
 const SMALLEST_SCALE = 0.8
 
 /** Height of the linear region in the level diagram. */
-const REGION_PX = { A4: 96, Letter: 88 } as const
+const REGION_PX = { A4: 84, Letter: 76 } as const
 const TRANSFER_PX = 330
+/** Height of one panel of a curve. */
+const PANEL_PX = 130
+
+const NO_FIGURES: NoteFigures = {
+  levels: null,
+  schematic: null,
+  transfer: null,
+  errors: null,
+  spread: null,
+  noise: null,
+  response: null,
+}
 
 interface FiguresInput {
   document: DesignDocument
   plan: Plan
   note: Note
+  spread: Spread | null
+  curves: Curves | null
 }
 
 /** The figures of a note, from the same geometry as on screen. */
-export function drawFigures({ document, plan, note }: FiguresInput): NoteFigures {
+export function drawFigures({ document, plan, note, spread, curves }: FiguresInput): NoteFigures {
   const candidate = plan.chosen === null ? null : (plan.candidates[plan.chosen] ?? null)
-  if (!candidate) return { levels: null, schematic: null, transfer: null }
+  if (!candidate) return NO_FIGURES
   const design = designSchema.parse(document)
   return {
     levels: note.first.levels ? drawLevels(note.first.levels.levels, design, note.meta.paper) : null,
     schematic: note.first.schematic ? drawSchematic(document, candidate, note.meta) : null,
     transfer: drawTransfer(design, candidate),
+    errors: drawErrors(design, candidate),
+    spread: spread && drawSpread(design, candidate, spread),
+    noise: curves && drawPlot(noisePlot(curves.noise)),
+    response:
+      curves &&
+      drawPlot(
+        responsePlot(curves.bode, {
+          filter: candidate.filter ?? null,
+          bandwidth: design.sensor.bandwidth ?? null,
+        }),
+      ),
   }
+}
+
+function drawErrors(design: Design, { budget }: Candidate): ReactNode {
+  if (!budget) return null
+  const chart = errorBars(budget, budget.target?.state ?? 'calibrated', 1 / budget.perQuantity)
+  const drawing = layoutErrorChart(chart, { unit: design.sensor.quantity.unit, width: BLOCK_PX })
+  return drawAt(drawing)
+}
+
+function drawSpread(design: Design, { budget }: Candidate, spread: Spread): ReactNode {
+  const limit = budget?.target ? budget.target.limit / budget.perQuantity : null
+  return drawAt(layoutSpreadPlot(spread, { unit: design.sensor.quantity.unit, target: limit }))
+}
+
+const drawPlot = ({ plot }: NamedPlot): ReactNode => drawAt(layoutCurvePlot(plot, { panel: PANEL_PX }))
+
+/** At its own size, or as wide as the text block. */
+function drawAt(drawing: { width: number; height: number; shapes: Shape[] }): ReactNode {
+  const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)
+  const width = Math.min(BLOCK_WIDTH, box.width * POINTS_PER_PX)
+  return <Drawing shapes={drawing.shapes} box={box} width={width} />
 }
 
 function drawLevels(levels: readonly Level[], design: Design, paper: Paper): ReactNode {
@@ -77,9 +128,7 @@ function drawSchematic(document: DesignDocument, candidate: Candidate, meta: Not
 function drawTransfer(design: Design, candidate: Candidate): ReactNode {
   const input = transferOf(candidate, design.sensor.quantity, design.converter)
   if (!input) return null
-  const drawing = layoutTransferPlot(input, { height: TRANSFER_PX })
-  const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)
-  return <Drawing shapes={drawing.shapes} box={box} width={box.width * POINTS_PER_PX} />
+  return drawAt(layoutTransferPlot(input, { height: TRANSFER_PX }))
 }
 
 /** Lettering here is a little wider than on screen: the box grows sideways to hold all of it. */

@@ -1,15 +1,14 @@
 import { Document, View } from '@react-pdf/renderer'
 import type { ReactNode } from 'react'
 import type { Note, SheetGroup } from '#shared/note/types.ts'
-import { SectionView, toAnchor } from './blocks.tsx'
+import { SectionView, toAnchor, type Figures } from './blocks.tsx'
 import { FirstSheetView } from './first-sheet.tsx'
 import { Sheets } from './frame.tsx'
 import { toPrintable } from './glyphs.ts'
 
-export interface NoteFigures {
+export interface NoteFigures extends Figures {
   levels: ReactNode
   schematic: ReactNode
-  transfer: ReactNode
 }
 
 interface NoteDocumentProps {
@@ -36,18 +35,18 @@ export function NoteDocument({ note, figures }: NoteDocumentProps): ReactNode {
       <Sheets note={note}>
         <FirstSheetView first={note.first} figures={figures} />
         {note.groups.map((group) => (
-          <Group key={group.id} group={group} figure={figures.transfer} />
+          <Group key={group.id} group={group} figures={figures} />
         ))}
       </Sheets>
     </Document>
   )
 }
 
-function Group({ group, figure }: { group: SheetGroup; figure: ReactNode }): ReactNode {
+function Group({ group, figures }: { group: SheetGroup; figures: Figures }): ReactNode {
   return (
     <View break={group.newSheet} {...toAnchor(group.id, group.title)}>
       {group.sections.map((section) => (
-        <SectionView key={section.id} section={section} figure={figure} />
+        <SectionView key={section.id} section={section} figures={figures} />
       ))}
     </View>
   )

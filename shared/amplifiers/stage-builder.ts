@@ -1,6 +1,5 @@
 import type { NetworkBuilder } from '#shared/network/builder.ts'
 import type { AmplifierPart } from '#shared/network/types.ts'
-import { temperatureSpan } from '#shared/design/references.ts'
 import type { Design } from '#shared/design/schema.ts'
 
 /**
@@ -22,22 +21,41 @@ export interface Pin {
   swing?: { ref: string; low: number; high: number }
 }
 
-/** Limits of one amplifier's error sources, for the tolerance box and the budget. SI units, at the worst temperature. */
+/** Limits of one amplifier's error sources, for the tolerance box and the budget. SI units, at 25 °C. */
 export interface AmplifierErrors {
   ref: string
   vos: number
-  /** Bias current at 25 °C as the network has it, and its limit at the hottest temperature. */
+  /** V/K */
+  vosDrift: number
+  /** Bias current as the network has it. */
   bias: number
-  ib: number
   ios: number
-  /** The other amplifier of an integrated part, whose + input is its − input. */
-  mate?: string
+  /** Kelvins for both currents to double; 0 constant. */
+  doubling: number
+  /** What an integrated part has besides: its two halves are one amplifier to people. */
+  integrated?: {
+    /** Designator of the whole part. */
+    part: string
+    /** The other half, whose + input is the part's − input. */
+    mate: string
+    /** Source that gives the output: its gain carries the part's gain error. */
+    output: string
+    gain: number
+    gainError: number
+    /** 1/K */
+    gainDrift: number
+    /** Fraction of the signal's span. */
+    nonlinearity: number
+  }
   /** 1/CMRR and 1/PSRR as ratios. */
   cmrr: number
   psrr: number
   /** Common mode at which the offset is given, V. */
   reference: number
 }
+
+/** Designator of the capacitor from an amplifier's output to its − input; `choose.values` takes it by this name. */
+export const feedbackRef = (amplifier: string): string => `C${amplifier}`
 
 /** Collects what the arrangements of a chain add, under the names of one stage. */
 export class StageBuilder {
@@ -77,6 +95,7 @@ export class StageBuilder {
     this.counter.amplifiers += 1
     const ref = `U${this.counter.amplifiers}`
     this.network.amplifier({ ref, p, m, out, vpos: 'vpos', vneg: 'vneg', part, stage })
+    this.feedbackCapacitor(ref, m, out, stage)
     const input = (name: string, node: string): Pin => ({
       name: `${ref} ${name}`,
       node,
@@ -100,25 +119,29 @@ export class StageBuilder {
     return ref
   }
 
+  /** The capacitor that steadies an amplifier, where a person chose one; a follower has no place for it. */
+  private feedbackCapacitor(amplifier: string, m: string, out: string, stage: string): void {
+    const ref = feedbackRef(amplifier)
+    const value = this.design.choose.values?.[ref]
+    if (value === undefined || m === out) return
+    const { tolerance, drift } = this.design.parts.capacitors
+    this.network.capacitor({ ref, a: out, b: m, value, tolerance, drift, fixed: false, stage })
+  }
+
   nextDesignator(): string {
     this.counter.amplifiers += 1
     return `U${this.counter.amplifiers}`
   }
 }
 
-/** Doubling factor of a bias current at the hottest temperature; common practice for FET inputs. */
-export function biasGrowth(doubling: number, design: Design): number {
-  return doubling > 0 ? Math.max(1, 2 ** ((design.temperature.high - 25) / doubling)) : 1
-}
-
 export function amplifierErrors(ref: string, part: AmplifierPart, design: Design): AmplifierErrors {
-  const grow = biasGrowth(part.ibDoubling, design)
   return {
     ref,
-    vos: part.vos + part.vosDrift * temperatureSpan(design),
+    vos: part.vos,
+    vosDrift: part.vosDrift,
     bias: part.ib,
-    ib: part.ib * grow,
-    ios: part.ios * grow,
+    ios: part.ios,
+    doubling: part.ibDoubling,
     cmrr: 10 ** (-part.cmrr / 20),
     psrr: 10 ** (-part.psrr / 20),
     reference: part.vosCommonMode ?? (design.rails.positive + design.rails.negative) / 2,

@@ -8,7 +8,8 @@ import { complex, multiplyComplex, subtractComplex } from '#shared/numerics/comp
 import type { ComplexLu, ComplexVector } from '#shared/numerics/complex-lu.ts'
 import { factorComplexLu, solveComplexLu } from '#shared/numerics/complex-lu.ts'
 import type { System, UnknownIndex, ValueSet } from './system.ts'
-import { assembleSystem, findBranch, findElement, findNode } from './system.ts'
+import { assembleSystem, findBranch, findElement, findNode, outputVector } from './system.ts'
+import { prepareTransfers, type RightSide } from './transfer.ts'
 
 /** Phasors at one frequency, for the `ac` amplitudes of the sources. */
 export class AcSolution {
@@ -45,7 +46,7 @@ export class AcSolution {
 
 export interface AcOptions {
   model: Model
-  set?: ValueSet
+  set?: ValueSet | undefined
 }
 
 /** Response to the `ac` amplitudes of the sources at `frequency` (Hz, 0 or more). */
@@ -53,29 +54,67 @@ export function solveAc(network: Network, frequency: number, { model, set }: AcO
   return solveAt(network, assembleSystem(network, { model, set }), frequency)
 }
 
-/** Output phasor at each frequency (Hz), real amplifiers unless said otherwise; the equations are written once. */
+/** Output phasor over frequency (Hz), real amplifiers unless said otherwise; the equations are written once. */
+export function prepareResponse(
+  network: Network,
+  { model, set }: AcOptions = { model: 'real' },
+): (frequency: number) => Complex {
+  const system = assembleSystem(network, { model, set })
+  const transfer = prepareTransfers(system, outputVector(system.index, network.output), [
+    entriesOf(system.ac),
+  ])
+  return (frequency) => firstOf(transfer(frequency))
+}
+
+const firstOf = ({ re, im }: ComplexVector): Complex => complex(re[0]!, im[0]!)
+
+const entriesOf = (right: Float64Array): RightSide =>
+  [...right.keys()].flatMap((row) => (right[row] === 0 ? [] : [{ row, value: right[row]! }]))
+
+/** Output phasor at each frequency (Hz). */
 export function computeResponse(
   network: Network,
   frequencies: readonly number[],
-  { model, set }: AcOptions = { model: 'real' },
+  options: AcOptions = { model: 'real' },
 ): Complex[] {
-  const system = assembleSystem(network, { model, set })
-  return frequencies.map((frequency) => solveAt(network, system, frequency).output)
+  return frequencies.map(prepareResponse(network, options))
+}
+
+export interface LoopOptions {
+  set?: ValueSet
+  /** 2: the opened amplifier has the second pole that its phase margin implies; the others keep one. */
+  poles?: 1 | 2
 }
 
 /**
- * Loop gain of an amplifier at `frequency` (Hz; 0 for DC): the return ratio of its controlled source with the real
+ * Loop gain of an amplifier over frequency (Hz; 0 for DC): the return ratio of its controlled source with the real
  * network around it, T = −A(f)·(v_p − v_m) for 1 V at that source. A positive real part at DC is negative feedback.
- * Source: Bode, Network Analysis and Feedback Amplifier Design, chapter 4.
+ * Source: Bode, Network Analysis and Feedback Amplifier Design, chapter 4. The equations are written once.
  */
-export function computeLoopGain(network: Network, ref: string, frequency: number): Complex {
-  const system = assembleSystem(network, { model: 'real', opened: ref })
+export function openLoop(
+  network: Network,
+  ref: string,
+  { set, poles = 1 }: LoopOptions = {},
+): (frequency: number) => Complex {
+  const system = assembleSystem(network, { model: 'real', opened: ref, set })
   const element = findElement(system.index, ref)
   const { loop } = kindOf(element)
   if (!loop) throw new RangeError(`${ref} is no amplifier: it has no loop gain`)
   const { p, m } = loop.inputs(element)
-  const between = solveAt(network, system, frequency).between(m, p)
-  return multiplyComplex(loop.gain(element, 2 * Math.PI * frequency), between)
+  const between = outputVector(system.index, { p: m, n: p })
+  const transfer = prepareTransfers(system, between, [entriesOf(system.ac)])
+  return (frequency) =>
+    multiplyComplex(loop.gain(element, 2 * Math.PI * frequency, poles), firstOf(transfer(frequency)))
+}
+
+/** The loop gain at one frequency, Hz. */
+export function computeLoopGain(
+  network: Network,
+  ref: string,
+  frequency: number,
+  options: LoopOptions = {},
+): Complex {
+  return openLoop(network, ref, options)(frequency)
 }
 
 /** False where the feedback around an amplifier is positive at DC: its two inputs are swapped. */

@@ -8,8 +8,16 @@ export interface ReachGroup {
   resistors: number[]
 }
 
-/** Effects below this are rounding: a resistor whose whole tolerance moves an output less does not reach it, V. */
-const NOTHING = 1e-13
+export interface Reach {
+  groups: ReachGroup[]
+  /** Per output what all resistors that its group does not move can do together, V (or A): widens its bounds. */
+  slack: Float64Array
+}
+
+/** A resistor whose whole tolerance moves an output less is not moved for it; its effect is added to the bounds, V. */
+const SLIGHT = 1e-9
+/** Effects are taken at a few places of the box; where they are that small they hardly differ elsewhere in it. */
+const SAFETY = 2
 
 /** Places in the box at which reach is tested; several, since a matched pair has no effect at nominal alone. */
 const TEST_POINTS = 4
@@ -22,8 +30,8 @@ const WALK_COST = 400
  * ideal amplifier's output hides what lies behind it. An effect is (output per ampere in the resistor's place) × (change
  * of conductance) × (largest voltage across it), looked at in several places of the box.
  */
-export function groupByReach(problem: Problem): ReachGroup[] {
-  const reaches = findReach(problem)
+export function groupByReach(problem: Problem): Reach {
+  const { reaches, slack } = findReach(problem)
   const groups = new Map<string, ReachGroup>()
   reaches.forEach((reach, output) => {
     const resistors = [...reach].sort((first, second) => first - second)
@@ -32,7 +40,7 @@ export function groupByReach(problem: Problem): ReachGroup[] {
     group.outputs.push(output)
     groups.set(key, group)
   })
-  return mergeSmall([...groups.values()])
+  return { groups: mergeSmall([...groups.values()]), slack }
 }
 
 /** Joins a group with one that moves the same resistors and more where the extra visits cost less than its own walk. */
@@ -51,39 +59,57 @@ function mergeSmall(groups: ReachGroup[]): ReachGroup[] {
   return kept
 }
 
-/** Per output the resistors that reach it. */
-function findReach(problem: Problem): Set<number>[] {
-  const { outputs, cmrr, ports } = problem
-  const reaches = outputs.map(() => new Set<number>())
-  const meanReaches = cmrr.map(() => new Set<number>())
-  const feels = outputs.map(() => new Set<number>())
+/** Per output the resistors that reach it, and what the others can do to it. */
+function findReach(problem: Problem): { reaches: Set<number>[]; slack: Float64Array } {
+  const { outputs, cmrr, ports, resistors } = problem
+  const count = resistors.length
+  /** Largest effect of each resistor, output by output, then common mode by common mode. */
+  const effects = new Float64Array((outputs.length + cmrr.length) * count)
+  /** Largest response of each output to the offset of each amplifier. */
+  const feels = new Float64Array(outputs.length * cmrr.length)
   for (let point = 0; point < TEST_POINTS; point++) {
     const inverse = invertAt(problem, point)
     if (!inverse) continue
-    const strength = problem.resistors.map(
+    const strength = resistors.map(
       (resistor) => (resistor.high - resistor.low) * largestVoltage(problem, inverse, resistor),
     )
-    const mark = (weights: Sparse, reach: Set<number>): Float64Array => {
+    const mark = (weights: Sparse, row: number): Float64Array => {
       const response = combineRows(problem, weights, inverse)
-      problem.resistors.forEach(({ a, b }, i) => {
+      resistors.forEach(({ a, b }, i) => {
         const transfer = (a < 0 ? 0 : response[a]!) - (b < 0 ? 0 : response[b]!)
-        if (Math.abs(transfer) * strength[i]! > NOTHING) reach.add(i)
+        const effect = Math.abs(transfer) * strength[i]!
+        if (effect > effects[row * count + i]!) effects[row * count + i] = effect
       })
       return response
     }
-    cmrr.forEach(({ mean }, k) => mark(mean, meanReaches[k]!))
+    cmrr.forEach(({ mean }, k) => mark(mean, outputs.length + k))
     outputs.forEach((output, o) => {
-      const response = mark(output, reaches[o]!)
+      const response = mark(output, o)
       cmrr.forEach(({ port }, k) => {
-        if (Math.abs(respond(response, ports[port]!)) > NOTHING) feels[o]!.add(k)
+        const felt = Math.abs(respond(response, ports[port]!))
+        if (felt > feels[o * cmrr.length + k]!) feels[o * cmrr.length + k] = felt
       })
     })
   }
   // a common-mode error carries what moves the common mode to every output that feels the amplifier's offset
-  feels.forEach((amplifiers, o) => {
-    for (const k of amplifiers) for (const resistor of meanReaches[k]!) reaches[o]!.add(resistor)
+  outputs.forEach((_, o) =>
+    cmrr.forEach(({ x }, k) => {
+      const weight = feels[o * cmrr.length + k]! * x
+      for (let i = 0; i < count; i++)
+        effects[o * count + i]! += weight * effects[(outputs.length + k) * count + i]!
+    }),
+  )
+  const slack = new Float64Array(outputs.length)
+  const reaches = outputs.map((_, o) => {
+    const reach = new Set<number>()
+    for (let i = 0; i < count; i++) {
+      const effect = effects[o * count + i]!
+      if (effect > SLIGHT) reach.add(i)
+      else slack[o]! += SAFETY * effect
+    }
+    return reach
   })
-  return reaches
+  return { reaches, slack }
 }
 
 function invertAt(problem: Problem, point: number): Float64Array | null {

@@ -105,7 +105,8 @@ export function computeExtremes(network: Network, request: ExtremesRequest): Ext
   let proven = true
   let keepsSign = true
   const reaching = new Set<number>()
-  for (const group of groupByReach(problem)) {
+  const { groups, slack } = groupByReach(problem)
+  for (const group of groups) {
     for (const resistor of group.resistors) reaching.add(resistor)
     const walk = startVertexWalk(problem, group.resistors, group.outputs)
     const evaluate = createEvaluator(walk, bounds)
@@ -124,8 +125,8 @@ export function computeExtremes(network: Network, request: ExtremesRequest): Ext
       const at = o * request.cases.length + c
       const entry: ExtremesEntry = {
         nominal: nominal.values[at]!,
-        low: bounds.low[at]!,
-        high: bounds.high[at]!,
+        low: bounds.low[at]! - slack[o]!,
+        high: bounds.high[at]! + slack[o]!,
       }
       if (problem.clip) {
         entry.clip = toClipRange(problem, bounds, o, c)

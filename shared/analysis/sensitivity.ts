@@ -9,7 +9,7 @@ import { solveComplexLu, solveTransposedComplexLu } from '#shared/numerics/compl
 import { factorLu, solveLu, solveTransposedLu } from '#shared/numerics/lu.ts'
 import { factorAt } from './ac.ts'
 import type { UnknownIndex, ValueSet } from './system.ts'
-import { assembleSystem, explainSingular, findBranch, findNode } from './system.ts'
+import { assembleSystem, explainSingular, findBranch, findNode, outputVector } from './system.ts'
 
 /*
  * Adjoint network: with M x = z and Mᵀ y = c, c picking the output, the derivative of the output to any amount p is
@@ -34,15 +34,29 @@ export interface Sensitivity<Value = number> {
   derivative: Value
 }
 
+/** One operating point with the derivatives of its output. */
+export interface SensitivityPoint {
+  /** V */
+  output: number
+  /** Voltage of a node against ground, V. */
+  voltage(node: string): number
+  sensitivities: Sensitivity[]
+}
+
 /** DC derivatives of the output to every element's value and every amplifier's error sources. */
-export function computeSensitivities(network: Network, options: SensitivityOptions): Sensitivity[] {
+export const computeSensitivities = (network: Network, options: SensitivityOptions): Sensitivity[] =>
+  analyseSensitivities(network, options).sensitivities
+
+/** The same with the operating point that they hold at. */
+export function analyseSensitivities(network: Network, options: SensitivityOptions): SensitivityPoint {
   const { model, set } = options
   const system = assembleSystem(network, { model, set })
   const { index } = system
   const lu = factorLu(system.constant, index.size)
   if (lu.sign === 0) throw explainSingular(network, model, lu)
   const x = solveLu(lu, system.dc)
-  const y = solveTransposedLu(lu, outputVector(index, options.output ?? network.output))
+  const output = outputVector(index, options.output ?? network.output)
+  const y = solveTransposedLu(lu, output)
   const voltage = (node: string) => {
     const at = index.nodeAt.get(node) ?? -1
     return at < 0 ? 0 : x[at]!
@@ -57,11 +71,12 @@ export function computeSensitivities(network: Network, options: SensitivityOptio
       if (row >= 0) derivative += y[row]! * dc
     },
   }
-  return collect(network, options, stamper, voltage, () => {
+  const sensitivities = collect(network, options, stamper, voltage, () => {
     const found = derivative
     derivative = 0
     return found
   })
+  return { output: output.reduce((sum, weight, at) => sum + weight * x[at]!, 0), voltage, sensitivities }
 }
 
 /** Derivatives of the output phasor at `frequency` (Hz) for the `ac` amplitudes of the sources. Only values have one:
@@ -130,26 +145,20 @@ function collect<Value>(
   voltage: (node: string) => number,
   take: () => Value,
 ): Sensitivity<Value>[] {
-  return network.elements.flatMap((element) =>
-    portNames
-      .filter((port) => kindOf(element).ports[port])
-      .map((port) => {
-        stampPort(element, port, stamper, { reference: references?.[element.ref], voltage })
-        return { ref: element.ref, port, derivative: take() }
-      }),
-  )
+  const found: Sensitivity<Value>[] = []
+  for (const element of network.elements) {
+    const { ports } = kindOf(element)
+    for (const port of portNames) {
+      if (!ports[port]) continue
+      stampPort(element, port, stamper, { reference: references?.[element.ref], voltage })
+      found.push({ ref: element.ref, port, derivative: take() })
+    }
+  }
+  return found
 }
 
 function places(index: UnknownIndex, model: Model): Pick<Stamper, 'model' | 'node' | 'branch'> {
   return { model, node: (name) => findNode(index, name), branch: (ref) => findBranch(index, ref) }
-}
-
-function outputVector(index: UnknownIndex, output: { p: string; n: string }): Float64Array {
-  const vector = new Float64Array(index.size)
-  const [p, n] = [findNode(index, output.p), findNode(index, output.n)]
-  if (p >= 0) vector[p]! += 1
-  if (n >= 0) vector[n]! -= 1
-  return vector
 }
 
 function multiplyEntries(a: ComplexVector, i: number, b: ComplexVector, j: number): Complex {

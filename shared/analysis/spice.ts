@@ -1,13 +1,28 @@
 import { kindOf } from '#shared/network/elements/index.ts'
 import { toSpiceNumber } from '#shared/network/elements/spice-number.ts'
-import type { Network } from '#shared/network/types.ts'
+import { GROUND, type Network } from '#shared/network/types.ts'
 
-/** What the simulator is asked: the operating point, or a sweep of frequency (Hz). */
-export type SpiceAnalysis = 'op' | { ac: { pointsPerDecade: number; from: number; to: number } }
+interface Sweep {
+  pointsPerDecade: number
+  /** Hz */
+  from: number
+  to: number
+}
+
+/** What the simulator is asked: the operating point, a sweep of frequency, or the noise at the network's output. */
+export type SpiceAnalysis =
+  | 'op'
+  | { ac: Sweep }
+  /** `input`: the source that the noise is referred to; it has to carry an `ac` amplitude. */
+  | { noise: Sweep & { input: string } }
 
 export interface SpiceOptions {
   /** Lines put below the title as comments. */
   comments?: readonly string[]
+  /** Further lines behind the elements: noise sources, models. */
+  extra?: readonly string[]
+  /** Resistors (as they are printed, `R_U1_D`) that make no thermal noise. */
+  noiseless?: (printed: string) => boolean
   analysis?: SpiceAnalysis
 }
 
@@ -33,23 +48,32 @@ const SPELLED: Record<string, string> = {
  * analyses solve), temperature and one analysis. Complete, plain ASCII, and of SPICE 3 elements only; every number is
  * printed so that it reads back as the same double.
  */
-export function toSpice(network: Network, { comments = [], analysis = 'op' }: SpiceOptions = {}): string {
+export function toSpice(network: Network, options: SpiceOptions = {}): string {
+  const { comments = [], extra = [], noiseless = () => false, analysis = 'op' } = options
+  const quieten = (line: string): string => {
+    const ref = line.split(' ', 1)[0] ?? ''
+    return ref.startsWith('R') && noiseless(ref) ? `${line} noisy=0` : line
+  }
   const lines = [
     toAscii(network.title),
     ...comments.flatMap((comment) => comment.split(/\r?\n/).map((line) => `* ${toAscii(line)}`.trimEnd())),
-    ...network.elements.flatMap((element) => kindOf(element).toSpice(element)),
+    ...network.elements.flatMap((element) => kindOf(element).toSpice(element)).map(quieten),
+    ...extra,
     `.options temp=${toSpiceNumber(network.temperature)}`,
-    toAnalysisLine(analysis),
+    toAnalysisLine(network, analysis),
     '.end',
   ]
   return `${lines.join('\n')}\n`
 }
 
-function toAnalysisLine(analysis: SpiceAnalysis): string {
+function toAnalysisLine({ output: { p, n } }: Network, analysis: SpiceAnalysis): string {
   if (analysis === 'op') return '.op'
-  const { pointsPerDecade, from, to } = analysis.ac
-  return `.ac dec ${toSpiceNumber(pointsPerDecade)} ${toSpiceNumber(from)} ${toSpiceNumber(to)}`
+  if ('ac' in analysis) return `.ac ${toSweep(analysis.ac)}`
+  return `.noise v(${n === GROUND ? p : `${p},${n}`}) ${analysis.noise.input} ${toSweep(analysis.noise)}`
 }
+
+const toSweep = ({ pointsPerDecade, from, to }: Sweep): string =>
+  `dec ${[pointsPerDecade, from, to].map(toSpiceNumber).join(' ')}`
 
 function toAscii(text: string): string {
   return [...text].map((char) => SPELLED[char] ?? (/[ -~]/.test(char) ? char : '?')).join('')

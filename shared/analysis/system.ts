@@ -91,6 +91,15 @@ export function findBranch(index: UnknownIndex, ref: string): number {
   return at
 }
 
+/** Picks the output from the unknowns. */
+export function outputVector(index: UnknownIndex, output: { p: string; n: string }): Float64Array {
+  const vector = new Float64Array(index.size)
+  const [p, n] = [findNode(index, output.p), findNode(index, output.n)]
+  if (p >= 0) vector[p]! += 1
+  if (n >= 0) vector[n]! -= 1
+  return vector
+}
+
 export interface AssembleOptions {
   model: Model
   set?: ValueSet | undefined

@@ -20,6 +20,8 @@ export const planApi = {
     path: '/api/plan',
     access: 'public',
     computes: true,
+    /** `check=true`: with the independent check in the simulator, a second or two later. */
+    query: z.strictObject({ check: z.enum(['true', 'false']).default('false') }),
     body: designBodySchema,
     response: z.custom<Plan>((value) => typeof value === 'object' && value !== null),
   }),

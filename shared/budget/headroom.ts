@@ -1,5 +1,6 @@
 import type { Ends, HeadroomEntry, Level, RoomState } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
+import { isFilterStage } from '#shared/filters/filter-spec.ts'
 import type { Assessment, WatchedPin } from './assess.ts'
 
 /** Excess below which a pin counts as at its limit, as a fraction of its region: nanovolts of bias are no fault. */
@@ -179,27 +180,28 @@ function sensorRegion(design: Design, pins: WatchedPin[], nominal: Ends): Region
 
 /**
  * Volts by which each end of the target has to move inward so that output pins keep `keep` of their region over the
- * span, and stay inside it beyond the span. Pins at the converter and at the last stage's output move with it.
+ * span, and stay inside it beyond the span. Pins at the converter, at the last stage's output and in the filter move
+ * with it, or against it before a filter that inverts.
  */
 export function guardDeficits(
   assessment: Assessment,
   keep: number,
 ): { low: number; high: number; beyond: Ends } {
-  const last = assessment.chains.low.levels.at(-2)?.p
-  const following = assessment.pins.filter(
-    (p) => p.role === 'converter' || (p.node === last && p.role === 'output') || p.node === 'adc',
-  )
-  let low = -Infinity
-  let high = -Infinity
-  const beyond = { low: -Infinity, high: -Infinity }
-  for (const pin of following) {
+  const signs = new Map(assessment.chains.low.following.map(({ node, sign }) => [node, sign]))
+  const deficits = { low: -Infinity, high: -Infinity, beyond: { low: -Infinity, high: -Infinity } }
+  for (const pin of assessment.pins) {
+    const moves = pin.role === 'output' || isFilterStage(pin.stage) ? signs.get(pin.node) : undefined
+    const sign = pin.role === 'converter' || pin.node === 'adc' ? 1 : moves
+    if (sign === undefined) continue
     const size = width(pin.allowed)
     const whole = wholeMargin(pin)
     const span = spanMargin(pin)
-    low = Math.max(low, keep * size - span.low)
-    high = Math.max(high, keep * size - span.high)
-    beyond.low = Math.max(beyond.low, -whole.low)
-    beyond.high = Math.max(beyond.high, -whole.high)
+    for (const end of ['low', 'high'] as const) {
+      const own = sign === 1 ? end : end === 'low' ? 'high' : 'low'
+      const room = pin.role === 'input' && pin.atRail[own] ? 0 : keep
+      deficits[end] = Math.max(deficits[end], room * size - span[own])
+      deficits.beyond[end] = Math.max(deficits.beyond[end], -whole[own])
+    }
   }
-  return { low, high, beyond }
+  return deficits
 }

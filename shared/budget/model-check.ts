@@ -1,9 +1,10 @@
-import { computeLoopGain } from '#shared/analysis/ac.ts'
+import { openLoop } from '#shared/analysis/ac.ts'
 import { solveDc } from '#shared/analysis/dc.ts'
 import type { Chain } from '#shared/design/chain.ts'
 import type { ModelEntry, Reason } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import type { Amplifier, Network } from '#shared/network/types.ts'
+import type { Complex } from '#shared/numerics/complex.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 
 /** Frequencies searched for the point where the model stops being good enough, Hz. */
@@ -28,13 +29,14 @@ export function checkModel(
   return amplifiersOf(network).map((u) => {
     const between = full.between(u.p, u.m)
     const current = between / u.part.rin + full.voltage(u.p) / u.part.rcm + u.part.ib
-    const dc = loopGain(network, u.ref, 0)
+    const loop = openLoop(network, u.ref)
+    const dc = loop(0)
     const gainError = -1 / (1 + dc.re)
     const codes = (fraction: number) => (Math.abs(fraction) * Math.abs(ySpan)) / lsb
-    const errorAt = (f: number) => magnitudeError(network, u.ref, f, dc.re)
+    const errorAt = (f: number) => magnitudeError(loop, f, dc.re)
     const bandwidth = design.sensor.bandwidth ?? null
     const atBandwidth = bandwidth === null ? null : codes(errorAt(bandwidth))
-    const phase = bandwidth === null ? null : residuePhase(network, u.ref, bandwidth)
+    const phase = bandwidth === null ? null : residuePhase(loop, bandwidth)
     const allowed = design.rules.modelError
     const dcLsb = codes(gainError)
     const holdsTo = dcLsb > allowed ? null : findLimit((f) => codes(errorAt(f)) > allowed)
@@ -57,18 +59,18 @@ export function checkModel(
 const amplifiersOf = (network: Network): Amplifier[] =>
   network.elements.flatMap((e) => (e.kind === 'amplifier' ? [e] : []))
 
-const loopGain = (network: Network, ref: string, f: number) => computeLoopGain(network, ref, f)
+type Loop = (frequency: number) => Complex
 
 /** Change of |T/(1+T)| from its DC value, as a fraction. */
-function magnitudeError(network: Network, ref: string, f: number, t0: number): number {
-  const t = loopGain(network, ref, f)
+function magnitudeError(loop: Loop, f: number, t0: number): number {
+  const t = loop(f)
   const size = Math.hypot(t.re, t.im) / Math.hypot(1 + t.re, t.im)
   return size / (t0 / (1 + t0)) - 1
 }
 
 /** Phase of T/(1+T), degrees. */
-function residuePhase(network: Network, ref: string, f: number): number {
-  const t = loopGain(network, ref, f)
+function residuePhase(loop: Loop, f: number): number {
+  const t = loop(f)
   return ((Math.atan2(t.im, t.re) - Math.atan2(t.im, 1 + t.re)) * 180) / Math.PI
 }
 

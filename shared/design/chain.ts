@@ -1,7 +1,9 @@
 import type { SourceVariable } from '#shared/analysis/extremes.ts'
 import type { Arrangement, Need, Sizing } from '#shared/amplifiers/define.ts'
 import { StageBuilder, type AmplifierErrors, type Pin } from '#shared/amplifiers/stage-builder.ts'
-import type { RcFilter } from '#shared/filters/rc.ts'
+import { addFilter, type FollowingNode } from '#shared/filters/build-filter.ts'
+import type { FilterSpec } from '#shared/filters/filter-spec.ts'
+import { growthOf, type ErrorInput } from '#shared/budget/error-input.ts'
 import { NetworkBuilder } from '#shared/network/builder.ts'
 import type { Network } from '#shared/network/types.ts'
 import { kindOf } from '#shared/sensors/index.ts'
@@ -21,7 +23,9 @@ export interface StageChoice {
 
 export interface ChainSpec {
   stages: StageChoice[]
-  filter: RcFilter
+  filter: FilterSpec
+  /** Feedback capacitors that the plan adds so that amplifiers stand firm: ref → F. What a person chose goes first. */
+  compensation?: Record<string, number>
 }
 
 /** A whole chain as one network at one value of the measurand, with what is uncertain in it. */
@@ -30,11 +34,15 @@ export interface Chain {
   pins: Pin[]
   errors: AmplifierErrors[]
   variables: SourceVariable[]
-  /** Resistors with a tolerance box: ref → ± fraction over temperature. */
+  /** Errors of the sensor itself, each by itself; `variables` holds their limits. */
+  sensorInputs: ErrorInput[]
+  /** Resistors with a tolerance box: ref → ± fraction over temperature and the calibration interval. */
   resistors: { ref: string; relative: number }[]
   signal: SensorSource['signal']
   /** Nodes along the chain in order: the sensor's, after each stage, the converter's. */
   levels: { node: string; title: string; p: string; n: string | null }[]
+  /** Nodes from the filter's input on, which move with the converter's pin or against it. */
+  following: FollowingNode[]
   references: References
 }
 
@@ -50,6 +58,8 @@ export function sensorContext(design: Design): SensorContext {
       positive: { voltage: design.rails.positive, variable: 'positiveRail' },
     },
     temperatureSpan: Math.max(Math.abs(range.low - 25), Math.abs(range.high - 25)),
+    years: design.calibration.interval,
+    distribution: design.analysis.distribution,
   }
 }
 
@@ -59,7 +69,8 @@ export function sensorEnds(design: Design): Ends {
 }
 
 /** Builds the chain of a design with the measurand at `quantity`. Throws RangeError for a broken promise. */
-export function buildChain(design: Design, spec: ChainSpec, quantity: number, title = design.name): Chain {
+export function buildChain(given: Design, spec: ChainSpec, quantity: number, title = given.name): Chain {
+  const design = spec.compensation ? withValues(given, spec.compensation) : given
   const builder = new NetworkBuilder()
   const references = resolveReferences(design)
   const variables: SourceVariable[] = []
@@ -97,7 +108,10 @@ export function buildChain(design: Design, spec: ChainSpec, quantity: number, ti
       levels.push({ node: choice.ref, title: `After ${choice.ref}`, p: out, n: null })
     at = { p: out, n: null }
   })
-  addFilter(builder, design, spec, at.p)
+  const filter = addFilter(builder, counter, design, spec.filter, at.p)
+  pins.push(...filter.pins)
+  errors.push(...filter.errors)
+  levels.push(...filter.levels)
   addConverter(builder, design, variables)
   levels.push({ node: 'adc', title: 'Converter input', p: 'adc', n: null })
   variables.push(...errorVariables(design, errors))
@@ -108,12 +122,29 @@ export function buildChain(design: Design, spec: ChainSpec, quantity: number, ti
     temperature: design.temperature.calibration,
   })
   const span = temperatureSpan(design)
-  const resistors = network.elements.flatMap((e) =>
-    e.kind === 'resistor' && e.tolerance + e.drift > 0
-      ? [{ ref: e.ref, relative: Math.min(e.tolerance + e.drift * span, 0.99) }]
-      : [],
-  )
-  return { network, pins, errors, variables, resistors, signal: source.signal, levels, references }
+  const aged = design.parts.resistors.ageing * design.calibration.interval
+  const resistors = network.elements.flatMap((e) => {
+    if (e.kind !== 'resistor') return []
+    const relative = e.tolerance + e.drift * span + (e.fixed ? 0 : aged)
+    return relative > 0 ? [{ ref: e.ref, relative: Math.min(relative, 0.99) }] : []
+  })
+  const sensorInputs = source.inputs
+  return {
+    network,
+    pins,
+    errors,
+    variables,
+    sensorInputs,
+    resistors,
+    signal: source.signal,
+    levels,
+    following: filter.following,
+    references,
+  }
+}
+
+function withValues(design: Design, values: Record<string, number>): Design {
+  return { ...design, choose: { ...design.choose, values: { ...values, ...design.choose.values } } }
 }
 
 /** Lets one more source move with a variable that exists already. */
@@ -168,14 +199,17 @@ function addSupplies(
           value: shift.resistance,
           stage: 'supply',
           fixed: true,
+          noiseless: true,
         })
       shareVariable(variables, shift.variable, 'VREF')
     }
   }
 }
 
-/** Whether any stage takes something from the reference. */
+/** Whether any stage or the filter takes something from the reference. */
 function needsReference(spec: ChainSpec): boolean {
+  const level = spec.filter.level?.kind
+  if (level === 'divider' || level === 'reference') return true
   return spec.stages.some((s) => {
     const form = s.sizing.form
     return (
@@ -186,41 +220,18 @@ function needsReference(spec: ChainSpec): boolean {
   })
 }
 
-function addFilter(builder: NetworkBuilder, design: Design, spec: ChainSpec, from: string): void {
-  const { filter } = spec
-  const { resistors, capacitors } = design.parts
-  const stage = 'filter'
-  if (filter.kind === 'none') {
-    // A chain without any part still needs its converter node: an ideal ammeter of 0 V joins it to the source.
-    if (from !== 'adc') builder.voltageSource({ ref: 'VLINK', p: from, n: 'adc', value: 0, stage })
-    return
-  }
-  builder.resistor({
-    ref: 'R9',
-    a: from,
-    b: 'adc',
-    value: filter.resistance,
-    tolerance: resistors.tolerance,
-    drift: resistors.drift,
-    fixed: false,
-    stage,
-  })
-  builder.capacitor({
-    ref: 'C9',
-    a: 'adc',
-    b: '0',
-    value: filter.capacitance,
-    tolerance: capacitors.tolerance,
-    drift: capacitors.drift,
-    fixed: false,
-    stage,
-  })
-}
-
 function addConverter(builder: NetworkBuilder, design: Design, variables: SourceVariable[]): void {
   const { inputResistance, inputCurrent } = design.converter
   const stage = 'converter'
-  builder.resistor({ ref: 'RADC', a: 'adc', b: '0', value: inputResistance, stage, fixed: true })
+  builder.resistor({
+    ref: 'RADC',
+    a: 'adc',
+    b: '0',
+    value: inputResistance,
+    stage,
+    fixed: true,
+    noiseless: true,
+  })
   if (inputCurrent > 0) {
     builder.currentSource({ ref: 'IADC', from: 'adc', to: '0', value: 0, stage })
     variables.push({
@@ -235,25 +246,29 @@ function addConverter(builder: NetworkBuilder, design: Design, variables: Source
 
 /** Offset, bias, offset current and supply rejection of each amplifier as source variables. */
 function errorVariables(design: Design, errors: AmplifierErrors[]): SourceVariable[] {
-  const { rails } = design
+  const { rails, temperature } = design
+  const span = temperatureSpan(design)
   const supplyReach =
     (Math.abs(rails.positive) + Math.abs(rails.negative)) * rails.tolerance + 2 * rails.ripple
   return errors.flatMap((e) => {
     const plus = { ref: e.ref, port: 'ib+' as const }
-    const minus = e.mate ? { ref: e.mate, port: 'ib+' as const } : { ref: e.ref, port: 'ib-' as const }
+    const mate = e.integrated?.mate
+    const minus = mate ? { ref: mate, port: 'ib+' as const } : { ref: e.ref, port: 'ib-' as const }
+    const growth = Math.max(1, growthOf(e.doubling, temperature.high))
+    const hottest = e.bias * growth
     const list: SourceVariable[] = [
-      symmetric(`${e.ref}.vos`, e.vos, [{ ref: e.ref, port: 'vos', scale: 1 }]),
+      symmetric(`${e.ref}.vos`, e.vos + e.vosDrift * span, [{ ref: e.ref, port: 'vos', scale: 1 }]),
       {
         id: `${e.ref}.ib`,
         nominal: e.bias,
-        low: Math.min(0, e.ib),
-        high: Math.max(0, e.ib),
+        low: Math.min(0, hottest),
+        high: Math.max(0, hottest),
         injections: [
           { ...plus, scale: 1 },
           { ...minus, scale: 1 },
         ],
       },
-      symmetric(`${e.ref}.ios`, e.ios, [
+      symmetric(`${e.ref}.ios`, e.ios * growth, [
         { ...plus, scale: 0.5 },
         { ...minus, scale: -0.5 },
       ]),

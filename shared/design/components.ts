@@ -1,3 +1,4 @@
+import { sectionNumber } from '#shared/filters/filter-spec.ts'
 import { kindOf as elementKind } from '#shared/network/elements/index.ts'
 import type { Component } from './plan.ts'
 import type { Trial } from './settle.ts'
@@ -31,7 +32,7 @@ export function componentsOf(design: Design, trial: Trial): Component[] {
         name: e.part.name,
         fixed: false,
         group: null,
-        sets: e.stage === 'level' ? 'Buffers the level' : `Amplifier, ${e.stage}`,
+        sets: e.stage === 'level' ? 'Buffers the level' : amplifierRole(e.stage),
       })
     } else if (e.kind === 'amplifier' && e.macro && !macros.has(e.macro)) {
       macros.add(e.macro)
@@ -67,9 +68,16 @@ function stageOf(trial: Trial, ref: string) {
 }
 
 function wantedFor(trial: Trial, ref: string): number | undefined {
-  if (ref === 'R9') return trial.spec.filter.wantedResistance || undefined
+  const { drive, sections } = trial.spec.filter
+  if (ref === 'R9') return drive.wantedResistance || undefined
+  for (const section of sections) if (section.parts[ref] !== undefined) return section.wantedParts[ref]
   const found = stageOf(trial, ref)
-  return found?.stage.sized.wanted[found.own]
+  return found?.stage.sized.wanted()[found.own]
+}
+
+function amplifierRole(stage: string): string {
+  const section = sectionNumber(stage)
+  return section === null ? `Amplifier, ${stage}` : `Filter, section ${section}`
 }
 
 function roleOf(trial: Trial, ref: string, stage: string): string {
@@ -80,8 +88,12 @@ function roleOf(trial: Trial, ref: string, stage: string): string {
   }
   if (ref === 'R9') return 'Filter and drive, series'
   if (ref === 'C9') return 'Filter and drive, reservoir'
+  const section = sectionNumber(stage)
+  if (section !== null && !/^CU\d+$/.test(ref))
+    return /^[RC]1[01]$/.test(ref) ? 'Filter, level' : `Filter, section ${section}`
   if (ref === 'RADC') return 'Input resistance of the converter'
   if (stage === 'source') return ref.startsWith('RSENSE') ? 'Sensor' : 'Source resistance'
   if (stage === 'supply') return 'Output resistance of the reference'
+  if (/^CU\d+$/.test(ref)) return `Steadies ${ref.slice(1)}`
   return 'Inside the amplifier'
 }

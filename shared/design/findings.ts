@@ -1,7 +1,9 @@
 import type { Stress, WatchedPin } from '#shared/budget/assess.ts'
 import { spanMargin, stateOf, wholeMargin } from '#shared/budget/headroom.ts'
+import { isFilterStage } from '#shared/filters/filter-spec.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
-import type { Candidate, Finding, Load, ModelEntry, OverVoltage, Reason } from './plan.ts'
+import type { Candidate, Finding, Load, ModelEntry, OverVoltage, Reason, StabilityEntry } from './plan.ts'
+import { stabilityFindings } from './quality-findings.ts'
 import type { Design } from './schema.ts'
 
 /** Sentences made from codes and numbers, in this one place. Figures are rounded to the side that flatters nothing. */
@@ -71,7 +73,13 @@ const capital = (text: string): string => text.charAt(0).toUpperCase() + text.sl
 export function findingsFor(
   design: Design,
   pins: WatchedPin[],
-  rest: { model: ModelEntry[]; loads: Load[]; overVoltage: OverVoltage[]; candidate: Candidate },
+  rest: {
+    model: ModelEntry[]
+    loads: Load[]
+    overVoltage: OverVoltage[]
+    stability: StabilityEntry[]
+    candidate: Candidate
+  },
 ): Finding[] {
   const list: Finding[] = []
   for (const pin of pins) list.push(...pinFindings(design, pin))
@@ -90,10 +98,16 @@ export function findingsFor(
     if (entry.state === 'clear') continue
     list.push(overVoltageFinding(entry))
   }
+  list.push(...rest.stability.flatMap(stabilityFindings))
   list.push(...rangeFindings(design, rest.candidate), ...choiceFindings(design, rest.candidate))
-  const weight = { over: 0, tight: 1, caution: 2, info: 3 } as const
-  return list.sort((a, b) => weight[a.severity] - weight[b.severity])
+  return worstFirst(list)
 }
+
+const weight = { over: 0, tight: 1, caution: 2, info: 3 } as const
+
+/** Those that forbid first; in the order found within one weight. */
+export const worstFirst = (list: readonly Finding[]): Finding[] =>
+  [...list].sort((a, b) => weight[a.severity] - weight[b.severity])
 
 function pinFindings(design: Design, pin: WatchedPin): Finding[] {
   const state = stateOf(pin, design.rules)
@@ -213,7 +227,7 @@ function choiceFindings(design: Design, candidate: Candidate): Finding[] {
   const pick = candidate.picks?.[candidate.pick ?? 0]
   const { choose } = design
   const fixed =
-    candidate.components?.some((c) => c.chosen && c.kind === 'resistor' && c.stage !== 'filter') ?? false
+    candidate.components?.some((c) => c.chosen && c.kind === 'resistor' && !isFilterStage(c.stage)) ?? false
   const best = candidate.optimum?.error
   if (pick && fixed && !pick.practical)
     info(

@@ -1,32 +1,38 @@
 import { solveDc } from '#shared/analysis/dc.ts'
 import { toSpice } from '#shared/analysis/spice.ts'
-import { assess } from '#shared/budget/assess.ts'
+import { assess, type Assessment } from '#shared/budget/assess.ts'
 import { toHeadroom, toLevels } from '#shared/budget/headroom.ts'
 import { toLoads } from '#shared/budget/loads.ts'
+import { sizeDrive } from '#shared/budget/drive.ts'
+import { computeDynamics } from '#shared/budget/dynamics.ts'
+import { computeBudget } from '#shared/budget/error-budget.ts'
+import { describeFilter } from '#shared/budget/filter-plan.ts'
 import { checkModel } from '#shared/budget/model-check.ts'
+import { summariseNoise } from '#shared/budget/noise.ts'
 import { checkOverVoltage } from '#shared/budget/over-voltage.ts'
-import { firstOrderTolerance } from '#shared/budget/tolerance.ts'
-import { attenuationDb, loadedBy, settlingTime } from '#shared/filters/rc.ts'
+import { checkStability } from '#shared/budget/stability.ts'
+import { behindFilter } from '#shared/filters/filter-spec.ts'
 import type { Network } from '#shared/network/types.ts'
 import { hashOf } from './canonical.ts'
 import { cautionsFor } from './cautions.ts'
-import { buildChain } from './chain.ts'
+import { buildChain, type ChainSpec } from './chain.ts'
 import { toCode } from './codes.ts'
 import { componentsOf } from './components.ts'
-import { findingsFor } from './findings.ts'
-import { arrangementsFor, trySingle } from './plan-stage.ts'
+import { findingsFor, worstFirst } from './findings.ts'
+import { qualityFindings, stabilityReasons, steadiedFinding } from './quality-findings.ts'
+import { arrangementsFor, isGiven, trySingle } from './plan-stage.ts'
 import { requirementOf } from './requirement.ts'
 import { reasonsAgainst, targetFor, type Trial, type TrialResult } from './settle.ts'
 import { askedArrangement } from './asked.ts'
 import { splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
-import type { Candidate, Ends, Plan, Realised } from './plan.ts'
+import type { Candidate, Ends, Plan, Realised, StabilityEntry } from './plan.ts'
 import { rankTrial } from './ranking.ts'
 import { DesignRefused, readDesign } from './read.ts'
 import { roundPlan } from './round.ts'
 import type { Design } from './schema.ts'
 
 /** Version of the engine, in every plan; raised whenever a figure could change. */
-export const ENGINE_VERSION = '1.0.0'
+export const ENGINE_VERSION = '1.1.0'
 
 /**
  * Plans a design document: requirement, candidates with their analyses, the chosen one. Pure: the same document gives
@@ -49,12 +55,15 @@ function planRead(design: Design, designHash: string): Plan {
     .map((result) => ({ result, rank: result.ok ? rankTrial(design, result.trial) : null }))
     .sort((a, b) => order(a) - order(b))
   const asked = askedArrangement(design)
-  const candidates = ranked
+  const judged = ranked
     .map(({ result, rank }) => toCandidate(design, result, rank, lsb, asked))
-    .sort((a, b) => Number(b.feasible) - Number(a.feasible))
-  const askedAt = asked === undefined ? -1 : candidates.findIndex((c) => c.arrangement === asked)
-  const firstFeasible = candidates.findIndex((c) => c.feasible)
+    .sort((a, b) => Number(b.candidate.feasible) - Number(a.candidate.feasible))
+  const askedAt = asked === undefined ? -1 : judged.findIndex((j) => j.candidate.arrangement === asked)
+  const firstFeasible = judged.findIndex((j) => j.candidate.feasible)
   const chosen = askedAt >= 0 ? askedAt : firstFeasible >= 0 ? firstFeasible : null
+  const candidates = judged.map(({ candidate, spec }, at) =>
+    at === chosen && spec && candidate.realised ? withQuality(design, spec, candidate) : candidate,
+  )
   const taken = chosen === null ? undefined : candidates[chosen]
   const target =
     taken?.target ??
@@ -144,6 +153,12 @@ function bestSplits(design: Design, singleFound: boolean): TrialResult[] {
 
 const idOf = (result: TrialResult): string => (result.ok ? result.trial.id : result.id)
 
+/** A candidate, and the chain that it stands for where there is one. */
+interface Judged {
+  candidate: Candidate
+  spec: ChainSpec | null
+}
+
 type Ranked = { result: TrialResult; rank: ReturnType<typeof rankTrial> | null }
 
 /** Feasible by score, then those that exist but clip, then those that do not exist. */
@@ -158,20 +173,26 @@ function toCandidate(
   rank: ReturnType<typeof rankTrial> | null,
   lsb: number,
   asked: string | undefined,
-): Candidate {
-  if (!result.ok || !rank)
-    return {
+): Judged {
+  if (!result.ok || !rank) {
+    const candidate: Candidate = {
       arrangement: idOf(result),
       title: result.ok ? result.trial.title : result.title,
       feasible: false,
       reasons: result.ok ? result.trial.reasons : result.reasons,
     }
+    return { candidate, spec: null }
+  }
   const { trial } = result
   const settled = trial.reasons.length === 0
   const wanted = settled || trial.id === asked
   const assessment = wanted ? assess(design, trial.spec, 'with-clips') : trial.assessment
   // What every board does decides, whatever the search for a target ended on.
-  const reasons = wanted ? reasonsAgainst(design, assessment) : trial.reasons
+  const clips = wanted ? reasonsAgainst(design, assessment) : trial.reasons
+  const { spec, stability, added } = wanted
+    ? steady(design, trial)
+    : { spec: trial.spec, stability: [], added: [] }
+  const reasons = [...clips, ...stability.flatMap(stabilityReasons)]
   const head: Candidate = {
     arrangement: trial.id,
     ...(trial.stages.length > 1
@@ -191,24 +212,66 @@ function toCandidate(
     guard: trial.guard,
   }
   // Someone who asks for an arrangement sees what it does even where it clips.
-  return reasons.length === 0 || trial.id === asked
-    ? { ...head, ...details(design, { ...trial, assessment, reasons }, lsb) }
-    : head
+  const candidate =
+    reasons.length === 0 || trial.id === asked
+      ? { ...head, stability, ...details(design, { ...trial, spec, assessment, reasons }, stability, lsb) }
+      : head
+  if (candidate.findings) candidate.findings.push(...added.map(steadiedFinding))
+  return { candidate, spec }
+}
+
+/**
+ * Adds the feedback capacitor that an amplifier needs to stand firm, as a designer would. A circuit that exists is left
+ * as it is: it gets the finding.
+ */
+function steady(
+  design: Design,
+  trial: Trial,
+): { spec: ChainSpec; stability: StabilityEntry[]; added: StabilityEntry[] } {
+  const { spec } = trial
+  const stability = checkStability(design, spec)
+  const exists = trial.stages.some((s) => isGiven(design, s.arrangement, s.need))
+  const added = exists ? [] : stability.filter((entry) => capacitorFor(entry) !== undefined)
+  if (added.length === 0) return { spec, stability, added }
+  const compensation = Object.assign({}, ...added.map((entry) => capacitorFor(entry)?.values)) as Record<
+    string,
+    number
+  >
+  const firm = { ...spec, compensation }
+  return { spec: firm, stability: checkStability(design, firm), added }
+}
+
+const capacitorFor = ({ state, cures }: StabilityEntry) =>
+  state === 'clear' ? undefined : cures.find(({ kind }) => kind === 'feedback-capacitor')
+
+/** What is computed for the chosen candidate alone: error, noise, dynamics, filter and drive, with their findings. */
+function withQuality(design: Design, spec: ChainSpec, candidate: Candidate): Candidate {
+  const noise = summariseNoise(design, spec)
+  const dynamics = computeDynamics(design, spec)
+  const quality = {
+    noise,
+    dynamics,
+    budget: computeBudget(design, spec, noise),
+    filter: describeFilter(design, spec),
+    drive: sizeDrive(design, spec, dynamics),
+  }
+  const findings = [...(candidate.findings ?? []), ...qualityFindings(design, quality)]
+  return { ...candidate, ...quality, findings: worstFirst(findings) }
 }
 
 const stageGain = (s: Trial['stages'][number]): number =>
   (s.sized.ends[1] - s.sized.ends[0]) / (s.need.signal.high - s.need.signal.low)
 
-function details(design: Design, trial: Trial, lsb: number): Partial<Candidate> {
+function details(design: Design, trial: Trial, stability: StabilityEntry[], lsb: number): Partial<Candidate> {
   const { assessment, spec, stages } = trial
-  const { chains } = assessment
+  const chains = chainsOf(design, trial)
   const last = stages[stages.length - 1]
   const realised = realise(design, trial, lsb)
   const model = checkModel(design, chains, realised.converter.high - realised.converter.low, lsb)
   const loads = toLoads(assessment)
-  const overVoltage = checkOverVoltage(design, chains.low, spec.filter.resistance)
+  const overVoltage = checkOverVoltage(design, chains.low, spec.filter.drive.resistance)
   const part: Partial<Candidate> = {
-    components: componentsOf(design, trial),
+    components: componentsOf(design, { ...trial, assessment: { ...assessment, chains } }),
     picks: last?.sized.picks ?? [],
     pick: last?.sized.pick ?? 0,
     ...(last?.sized.optimum ? { optimum: last.sized.optimum } : {}),
@@ -223,18 +286,19 @@ function details(design: Design, trial: Trial, lsb: number): Partial<Candidate> 
     model,
     overVoltage,
     loads,
-    tolerance: firstOrderTolerance(design, chains),
-    filter: filterSummary(design, trial),
     equations: stages.flatMap((s) =>
       s.arrangement.equations(s.sized.values, s.sized.sizing, s.need).map((e) => ({
         ...e,
         name: stages.length > 1 ? `${e.name}, ${s.ref}` : e.name,
       })),
     ),
-    netlist: netlistOf(design, trial),
+    netlist: netlistOf(design, trial.title, chains),
   }
   const candidate = { arrangement: trial.id, title: trial.title, feasible: true, reasons: [], ...part }
-  return { ...part, findings: findingsFor(design, assessment.pins, { model, loads, overVoltage, candidate }) }
+  return {
+    ...part,
+    findings: findingsFor(design, assessment.pins, { model, loads, overVoltage, stability, candidate }),
+  }
 }
 
 function realise(design: Design, trial: Trial, lsb: number): Realised {
@@ -247,7 +311,8 @@ function realise(design: Design, trial: Trial, lsb: number): Realised {
   const { signal } = requirementOf(design)
   const gain = (y.nominal.high - y.nominal.low) / (signal.high - signal.low)
   const aimed = stages[stages.length - 1]?.sized.sizing.target
-  const goal = aimed ? { low: aimed.low * trial.loading, high: aimed.high * trial.loading } : trial.target
+  const atPin = (volts: number) => behindFilter(trial.spec.filter, volts) * trial.loading
+  const goal = aimed ? { low: atPin(aimed.low), high: atPin(aimed.high) } : trial.target
   const error = { low: y.nominal.low - goal.low, high: y.nominal.high - goal.high }
   const { quantity } = design.sensor
   const perVolt = (quantity.high - quantity.low) / (y.nominal.high - y.nominal.low)
@@ -270,28 +335,16 @@ function realise(design: Design, trial: Trial, lsb: number): Realised {
   }
 }
 
-function filterSummary(design: Design, trial: Trial): NonNullable<Candidate['filter']> {
-  const { sensor, converter, rules } = design
-  // Without an amplifier before it the source stands in series with the filter.
-  const direct = trial.stages[0]?.arrangement.amplifiers === 0
-  const filter = direct
-    ? loadedBy(trial.spec.filter, requirementOf(design).need.sourceResistance)
-    : trial.spec.filter
-  return {
-    kind: filter.kind,
-    resistance: trial.spec.filter.resistance,
-    capacitance: filter.capacitance,
-    corner: filter.corner,
-    droopAtBandwidth: sensor.bandwidth === undefined ? null : attenuationDb(filter, sensor.bandwidth),
-    atHalfSampleRate:
-      converter.sampleRate === undefined ? null : attenuationDb(filter, converter.sampleRate / 2),
-    settling: settlingTime(filter, converter.bits, rules.settling),
-  }
+/** Networks at both ends with the feedback capacitors, which the bounds, at DC, have no need of. */
+function chainsOf(design: Design, { assessment, spec }: Trial): Assessment['chains'] {
+  if (!spec.compensation) return assessment.chains
+  const { low, high } = design.sensor.quantity
+  return { low: buildChain(design, spec, low), high: buildChain(design, spec, high) }
 }
 
-function netlistOf(design: Design, trial: Trial): string {
-  const high = trial.assessment.chains.high.network
-  const low = trial.assessment.chains.low.network
+function netlistOf(design: Design, title: string, chains: Assessment['chains']): string {
+  const high = chains.high.network
+  const low = chains.low.network
   const changes = high.elements.flatMap((e, i) => {
     const other = low.elements[i]
     return other && 'value' in e && 'value' in other && e.value !== other.value
@@ -301,7 +354,7 @@ function netlistOf(design: Design, trial: Trial): string {
   const { quantity } = design.sensor
   return toSpice(low, {
     comments: [
-      `${trial.title}; measurand at ${quantity.low} ${quantity.unit}`,
+      `${title}; measurand at ${quantity.low} ${quantity.unit}`,
       `At ${quantity.high} ${quantity.unit}:`,
       ...changes,
       `Output: ${low.output.p}`,
@@ -310,13 +363,31 @@ function netlistOf(design: Design, trial: Trial): string {
   })
 }
 
-/** The network of a candidate at quantity.low, as every analysis reads it: for drawings and checks. */
-export function buildNetworkFor(document: unknown, candidate: Candidate): Network | null {
+/** A candidate of a design's plan, built again for drawings, curves and studies. */
+export interface Prepared {
+  design: Design
+  spec: ChainSpec
+  candidate: Candidate
+}
+
+/** The chain of a candidate as the plan decided it; null where it has none. Throws DesignRefused. */
+export function prepareCandidate(document: unknown, candidate: Candidate): Prepared | null {
   const read = readDesign(document)
   if (!read.ok) throw new DesignRefused(read.faults)
-  const asked = { ...read.design, choose: { ...read.design.choose, arrangement: candidate.arrangement } }
-  const trial = findTrial(asked, candidate)
-  return trial ? buildChain(asked, trial.spec, asked.sensor.quantity.low).network : null
+  const design = { ...read.design, choose: { ...read.design.choose, arrangement: candidate.arrangement } }
+  const trial = findTrial(design, candidate)
+  if (!trial) return null
+  const own = (candidate.components ?? []).filter((c) => c.kind === 'capacitor' && /^CU\d+$/.test(c.ref))
+  const compensation = Object.fromEntries(own.map((c) => [c.ref, c.value ?? 0]))
+  return { design, candidate, spec: own.length > 0 ? { ...trial.spec, compensation } : trial.spec }
+}
+
+/** The network of a candidate at quantity.low, as every analysis reads it: for drawings and checks. */
+export function buildNetworkFor(document: unknown, candidate: Candidate): Network | null {
+  const prepared = prepareCandidate(document, candidate)
+  return prepared
+    ? buildChain(prepared.design, prepared.spec, prepared.design.sensor.quantity.low).network
+    : null
 }
 
 function findTrial(design: Design, candidate: Candidate): Trial | null {

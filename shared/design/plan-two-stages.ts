@@ -67,7 +67,7 @@ export function tryTwo(design: Design, split: Split, depth: AssessDepth): TrialR
   const id = `${split.first.id}+${split.second.id}`
   const title = `${split.first.title}, then ${split.second.title.charAt(0).toLowerCase()}${split.second.title.slice(1)}`
   const firstNeed: Need = { ...base, target: firstTarget(design, split, base) }
-  const first = sizeOne(design, split.first, firstNeed, '', 0)
+  const first = sizeFirst(design, split, firstNeed)
   if (!first.ok) return { ok: false, id, title, reasons: [first.reason] }
   const [low, high] = first.sized.ends
   return settleChain(
@@ -98,6 +98,18 @@ export function tryTwo(design: Design, split: Split, depth: AssessDepth): TrialR
     },
     depth,
   )
+}
+
+const sizedFirst = new WeakMap<Design, Map<string, ReturnType<typeof sizeOne>>>()
+
+/** The first stage of a split, the same for every second stage that follows it. */
+function sizeFirst(design: Design, { first, gain }: Split, need: Need): ReturnType<typeof sizeOne> {
+  let known = sizedFirst.get(design)
+  if (!known) sizedFirst.set(design, (known = new Map()))
+  const key = `${first.id} ${gain}`
+  let found = known.get(key)
+  if (!found) known.set(key, (found = sizeOne(design, first, need, '', 0)))
+  return found
 }
 
 /** Where the first stage's output is to lie: its span centred in the linear region, or as ground leaves it. */

@@ -1,4 +1,5 @@
 import { stateOf } from '#shared/budget/headroom.ts'
+import { isFilterStage } from '#shared/filters/filter-spec.ts'
 import type { Candidate } from './plan.ts'
 import type { Trial } from './settle.ts'
 import type { Design } from './schema.ts'
@@ -17,14 +18,12 @@ export const RANKING = {
 
 /** Score of a trial, lower is better, with the figures behind it and a sentence that says what was weighed. */
 export function rankTrial(design: Design, trial: Trial): NonNullable<Candidate['ranking']> {
-  const { network } = trial.assessment.chains.low
-  const resistors = network.elements.filter(
-    (e) => e.kind === 'resistor' && !e.fixed && e.stage !== 'filter',
-  ).length
-  const integrated = new Set(
-    network.elements.flatMap((e) => (e.kind === 'amplifier' && e.macro ? [e.macro] : [])),
-  ).size
-  const single = network.elements.filter((e) => e.kind === 'amplifier' && !e.macro).length
+  // Every candidate has the same filter behind it.
+  const elements = trial.assessment.chains.low.network.elements.filter((e) => !isFilterStage(e.stage))
+  const resistors = elements.filter((e) => e.kind === 'resistor' && !e.fixed).length
+  const integrated = new Set(elements.flatMap((e) => (e.kind === 'amplifier' && e.macro ? [e.macro] : [])))
+    .size
+  const single = elements.filter((e) => e.kind === 'amplifier' && !e.macro).length
   const { y, pins } = trial.assessment
   const steps = 2 ** design.converter.bits
   const range = design.converter.input.high - design.converter.input.low

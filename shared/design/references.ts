@@ -3,7 +3,7 @@ import type { Design, Reference } from './schema.ts'
 /** A reference voltage with what is uncertain in it. Volts, ohms, amperes. */
 export interface ResolvedReference {
   voltage: number
-  /** Limit ± as a fraction, over temperature. */
+  /** Limit ± as a fraction, over temperature and the calibration interval. */
   spread: number
   resistance: number
   source: number
@@ -39,7 +39,9 @@ export function resolveReferences(design: Design): References {
     const rail = given.same === 'positive'
     return {
       voltage: given.voltage,
-      spread: rail ? design.rails.tolerance : given.tolerance + given.drift * span,
+      spread: rail
+        ? design.rails.tolerance
+        : given.tolerance + given.drift * span + given.ageing * design.calibration.interval,
       resistance: given.outputResistance,
       source: given.source,
       sink: given.sink,

@@ -70,6 +70,16 @@ export const converterSchema = z.strictObject({
     })
     .optional(),
   supply: positive('Converter supply', 'V').optional(),
+  architecture: z.enum(['sar', 'oversampling']).default('sar'),
+  modulatorRate: positive('Modulator rate', 'Hz').optional(),
+  digitalFilter: z.enum(['none', 'sinc1', 'sinc2', 'sinc3', 'sinc4']).default('none'),
+  outputRate: positive('Output data rate', 'Hz').optional(),
+  multiplexed: z
+    .strictObject({
+      channels: numberField('Multiplexed channels', '', { min: 2, max: 64, integer: true }),
+      resistance: nonNegative('Multiplexer resistance', 'Ω').default(0),
+    })
+    .optional(),
 })
 export type Converter = z.output<typeof converterSchema>
 
@@ -239,7 +249,12 @@ const chooseSchema = z.strictObject({
     .max(2)
     .optional(),
   filter: z
-    .strictObject({ kind: z.enum(['rc', 'none']), corner: positive('Filter corner', 'Hz').optional() })
+    .strictObject({
+      kind: z.enum(['rc', 'none', 'sallen-key', 'multiple-feedback']),
+      response: z.enum(['butterworth', 'bessel', 'chebyshev']).optional(),
+      order: numberField('Filter order', '', { min: 1, max: 6, integer: true }).optional(),
+      corner: positive('Filter corner', 'Hz').optional(),
+    })
     .optional(),
   drive: z
     .strictObject({

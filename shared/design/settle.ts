@@ -2,9 +2,11 @@ import type { Arrangement, Need } from '#shared/amplifiers/define.ts'
 import { assess, type AssessDepth, type Assessment } from '#shared/budget/assess.ts'
 import { guardDeficits, stateOf } from '#shared/budget/headroom.ts'
 import { toLoads } from '#shared/budget/loads.ts'
-import { sizeFilter } from '#shared/filters/rc.ts'
+import { beforeFilter, sectionValues, type FilterSpec } from '#shared/filters/filter-spec.ts'
 import { CircuitError } from '#shared/network/circuit-error.ts'
+import { formatQuantity } from '#shared/units/format-quantity.ts'
 import type { ChainSpec, StageChoice } from './chain.ts'
+import { filterOf } from './filter-of.ts'
 import { clipReason, loadReason, stressReasons } from './findings.ts'
 import type { Ends, Reason } from './plan.ts'
 import { requirementOf } from './requirement.ts'
@@ -125,7 +127,10 @@ export function settleWith(
 ): TrialResult {
   const { signal, beyond } = requirementOf(design)
   const range = design.converter.input.high - design.converter.input.low
-  const loading = loadingOf(design)
+  const filter = filterOf(design)
+  if (filter.refusals.length > 0) return { ok: false, id, title, reasons: filter.refusals }
+  const loading = loadingOf(design, filter)
+  const turnsOver = filter.dc.gain < 0
   let guard = policy.start
   let inset = { low: 0, high: 0 }
   let crossed = false
@@ -135,14 +140,16 @@ export function settleWith(
     best = null
     for (let round = 0; round < MOST_ROUNDS; round++) {
       const target = targetFor(design, guard, inset, signal, beyond, crossed)
-      const sized = target.high > target.low ? size(scaled(target, loading)) : null
+      const sized = target.high > target.low ? size(before(filter, target, loading)) : null
       if (!sized) break
       if (!sized.ok) {
         if (!best) return { ok: false, id, title, reasons: sized.reasons }
         break
       }
+      const loss = sourceLoss(sized.stages, filter)
+      if (loss) return { ok: false, id, title, reasons: [loss] }
       const landing = sized.stages.at(-1)?.sized.sizing.target
-      if (beyond && landing && landing.low > landing.high !== crossed) {
+      if (beyond && landing && (landing.low > landing.high !== turnsOver) !== crossed) {
         // An inverting chain gives the readings beyond the low end at the top: its shares change places.
         crossed = !crossed
         continue
@@ -184,17 +191,38 @@ export function settleWith(
   }
 }
 
-/** What the converter's input resistance leaves of the signal behind the filter's resistor, as a ratio of at most 1. */
-function loadingOf(design: Design): number {
-  const { inputResistance } = design.converter
-  return inputResistance / (inputResistance + sizeFilter(design).resistance)
+/** Gain that a source without a stage behind it may lose to a filter section that loads it, fraction. */
+const MOST_LOSS = 1e-3
+
+/** Why a source that feeds an inverting section itself cannot: its resistance stands in series with the gain. */
+function sourceLoss(stages: Trial['stages'], { sections }: FilterSpec): Reason | null {
+  const [first] = sections
+  const source = stages[0]?.need.sourceResistance ?? 0
+  if (!first || stages.some((s) => s.arrangement.amplifiers > 0)) return null
+  const { R1, R3 } = sectionValues(first)
+  const loss = source / (source + R1)
+  if (R3 === undefined || loss <= MOST_LOSS) return null
+  const ohms = (r: number) => formatQuantity(r, 'Ω', { digits: 3 })
+  return {
+    code: 'filter-loads-source',
+    text: `The first section of the filter, ${ohms(R1)}, would load the ${ohms(source)} of the source: take the follower before it, or sallen-key sections.`,
+    numbers: { loss, source, input: R1 },
+  }
 }
 
-/** The last stage aims higher by what the converter's input resistance takes away. */
-const scaled = (target: Ends, loading: number): Ends => ({
-  low: target.low / loading,
-  high: target.high / loading,
-})
+/** What the converter's input resistance leaves of the signal behind the filter's resistor, as a ratio of at most 1. */
+function loadingOf({ converter: { inputResistance } }: Design, { drive }: FilterSpec): number {
+  return inputResistance / (inputResistance + drive.resistance)
+}
+
+/**
+ * Where the last stage has to land: higher by what the converter's input resistance takes away, and turned over where
+ * the filter inverts.
+ */
+function before(filter: FilterSpec, target: Ends, loading: number): Ends {
+  const ends = [target.low, target.high].map((volts) => beforeFilter(filter, volts / loading))
+  return { low: Math.min(...ends), high: Math.max(...ends) }
+}
 
 const stepUp = (fraction: number): number => Math.ceil(fraction / GUARD_STEP - 1e-9) * GUARD_STEP
 
@@ -202,7 +230,7 @@ type TrialParts = Pick<Trial, 'id' | 'title' | 'stages' | 'guard' | 'target' | '
 
 function assessTrial(design: Design, parts: TrialParts, depth: AssessDepth): Trial | { reasons: Reason[] } {
   const spec: ChainSpec = {
-    filter: sizeFilter(design),
+    filter: filterOf(design),
     stages: parts.stages.map((s): StageChoice => ({
       ref: s.ref,
       arrangement: s.arrangement,

@@ -21,7 +21,8 @@ export interface SizedStage {
   picks: PickEntry[]
   pick: number
   optimum: { error: number; toleranceError: number } | null
-  wanted: Record<string, number>
+  /** Values that the ideal equations ask for with the others as chosen; computed when asked for. */
+  wanted(): Record<string, number>
   /** Refs that a person fixed. */
   chosen: string[]
   /** Output at the two ends with ideal amplifiers, V. */
@@ -73,7 +74,7 @@ export function sizeStage(
         picks: [],
         pick: 0,
         optimum: null,
-        wanted: {},
+        wanted: () => ({}),
         chosen: [],
         ends: target,
       },
@@ -114,7 +115,7 @@ export function sizeStage(
       picks: found.map((p) => toEntry(p, best?.threshold)),
       pick: index,
       optimum: best ? { error: best.optimum, toleranceError: best.toleranceError } : null,
-      wanted: wantedValues(form, sizing, target, taken.values, refs),
+      wanted: () => wantedValues(form, sizing, target, taken.values, refs),
       chosen: Object.keys(fixed),
       ends: evaluateForm(reached, taken.values),
     },

@@ -16,6 +16,8 @@ export interface LevelOptions extends FigureOptions {
   measures?: LevelMeasures
   /** Node whose stage is being edited; its bay wears the arch. */
   editing?: string | null
+  /** Levels of another variant, drawn dotted where it has the same node. */
+  kept?: readonly Level[]
 }
 
 export interface LevelBay {
@@ -71,7 +73,7 @@ export function layoutLevelDiagram(levels: readonly Level[], options: LevelOptio
       width: measures.bay,
       height: place.scale.outer.high - place.scale.outer.low,
     },
-    shapes: bayShapes(place, measures, options),
+    shapes: [...bayShapes(place, measures, options), ...keptShapes(place, measures, options.kept)],
     marks: levelMarks(place.level, place.scale, options),
   }))
   const links = places.flatMap((place, i) => {
@@ -79,7 +81,7 @@ export function layoutLevelDiagram(levels: readonly Level[], options: LevelOptio
     return next ? linkShapes(place, next, measures) : []
   })
   const headings = places.flatMap((place, i) => headingShapes(place, places[i + 1], measures, options))
-  const key = measures.gutter > 0 ? levelKey(options.worst) : []
+  const key = measures.gutter > 0 ? levelKey(options.worst, options.kept !== undefined) : []
   const shapes = [...links, ...bays.flatMap((bay) => bay.shapes), ...headings, ...key]
   // A figure that made way for another may stand below the bay.
   const lowest = shapes.flatMap((s) => (s.type === 'text' ? [textBox(s)] : [])).map((b) => b.y + b.height)
@@ -145,6 +147,20 @@ function headingShapes(
     text('title', middle, measures.top - 31, `${place.level.title}${times}`, 'middle', { scale }),
     ...(next ? gainLabel(place, next, measures, options) : []),
   ]
+}
+
+/** Ends of the same node in another variant, dotted, on this one's scale. */
+function keptShapes(
+  { level, scale, x }: Placed,
+  { bay }: LevelMeasures,
+  kept: readonly Level[] = [],
+): Shape[] {
+  const other = kept.find(({ node }) => node === level.node)
+  if (!other || !isKnown(other) || !isKnown(level)) return []
+  return (['low', 'high'] as const).map((end) => {
+    const { y } = held(scale, other.nominal[end])
+    return line('signed', x, y, x + bay, y, `${level.node} kept ${end}`)
+  })
 }
 
 /** "× 100.8" between two bays. */

@@ -1,7 +1,7 @@
 import { line, rect, text, type Shape } from './shapes.ts'
 
 /** The key at the left of the strip: a swatch of 22 × 14 px and two words each. */
-export function levelKey(worst: boolean): Shape[] {
+export function levelKey(worst: boolean, kept = false): Shape[] {
   const swatch = (y: number) => ({ x: 0, y, width: 22, height: 14 })
   const entries: [string, (y: number) => Shape[]][] = [
     ['Beyond linear', (y) => [rect('poche', swatch(y))]],
@@ -16,6 +16,12 @@ export function levelKey(worst: boolean): Shape[] {
     ],
     ...(worst
       ? ([['Worst case', (y: number) => [line('worst', 0, y + 7, 22, y + 7)]]] as [
+          string,
+          (y: number) => Shape[],
+        ][])
+      : []),
+    ...(kept
+      ? ([['Kept variant', (y: number) => [line('signed', 0, y + 7, 22, y + 7)]]] as [
           string,
           (y: number) => Shape[],
         ][])

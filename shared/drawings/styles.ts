@@ -46,6 +46,12 @@ export const lineStyles = {
   grid: { width: 0.5 },
   cursor: { width: 1 },
   chosen: { width: 2 },
+  // Charts of errors, spread and curves
+  bar: { width: 0, filled: true },
+  'bar-signal': { width: 0, filled: true },
+  target: { width: 1, dash: [6, 2, 1.5, 2] },
+  tick: { width: 1 },
+  curve: { width: 1.2 },
   // Small levels of a list
   'mini-room': { width: 0, filled: true },
   'mini-level': { width: 0, filled: true, opacity: 0.5 },

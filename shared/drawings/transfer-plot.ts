@@ -1,6 +1,6 @@
 import type { Ends } from '#shared/design/plan.ts'
 import { formatNumber, formatQuantity, formatRange, type DecimalSign } from '#shared/units/format-quantity.ts'
-import { ticks } from './axis.ts'
+import { ticks, tickText } from './axis.ts'
 import { horizontalDimension, verticalDimension } from './dimension.ts'
 import {
   circle,
@@ -368,13 +368,6 @@ function roomDimension(y: number, limit: number, end: number, words: string): Sh
         })
       : text('room-clear', limit + 20, y + 4, words, 'start', { on: 'sheet' }),
   ]
-}
-
-/** Ticks with the same number of places. */
-function tickText(value: number, all: readonly number[], decimalSign: DecimalSign): string {
-  const places = Math.max(...all.map((v) => (String(v).split('.')[1] ?? '').length))
-  const text = Math.abs(value) >= 1e5 || places > 6 ? formatNumber(value) : value.toFixed(places)
-  return text.replace('-', '−').replace('.', decimalSign)
 }
 
 /** One sentence for those who do not see the plot. */

@@ -1,77 +1,47 @@
 import { standardValues } from '#shared/parts/series.ts'
 import type { Design } from '#shared/design/schema.ts'
 
-/** A first-order low-pass before the converter: R in series, C to ground. */
-export interface RcFilter {
-  kind: 'rc' | 'none'
-  /** Ω and F; 0 where there is none. */
-  resistance: number
-  capacitance: number
-  /** −3 dB corner, Hz; 0 where there is none. */
-  corner: number
-  /** What was asked for before the series, Hz. */
-  wantedCorner: number
-  wantedResistance: number
-}
-
-const NONE: RcFilter = {
-  kind: 'none',
-  resistance: 0,
-  capacitance: 0,
-  corner: 0,
-  wantedCorner: 0,
-  wantedResistance: 0,
-}
-
-/** Resistance that keeps the drop by a converter's input current small and the corner realisable. */
+/** Resistance that keeps the drop by a converter's input current small and the corner realisable, Ω. */
 const PREFERRED_RESISTANCE = 1000
 /** The reservoir stays this many times the sampling capacitor (common practice). */
 const RESERVOIR_RATIO = 20
 
-/**
- * Corner 1/(2πRC). Absent a stated corner it is ten times the signal bandwidth (droop 0.5 % of amplitude there), else
- * half the sample rate; with neither there is no filter. C is the standard value that brings R nearest to 1 kΩ and
- * stays at least 20 times the sampling capacitance; R is then the nearest standard value. Values that a person fixed
- * (R9, C9 in `choose.values`, or `choose.drive`) are obeyed.
- */
-export function sizeFilter(design: Design): RcFilter {
-  const { choose, sensor, converter, parts } = design
-  const chosen = choose.filter
-  if (chosen?.kind === 'none') return NONE
-  const leastR = clampResistance(design)
-  const fixedR = choose.values?.R9 ?? choose.drive?.resistance
-  const fixedC = choose.values?.C9 ?? choose.drive?.capacitance
-  const wantedCorner =
-    chosen?.corner ??
-    (fixedR && fixedC
-      ? 1 / (2 * Math.PI * fixedR * fixedC)
-      : sensor.bandwidth !== undefined
-        ? 10 * sensor.bandwidth
-        : converter.sampleRate !== undefined
-          ? converter.sampleRate / 2
-          : 0)
-  if (wantedCorner === 0 && fixedR === undefined && fixedC === undefined && chosen === undefined) return NONE
-  const corner = wantedCorner || 10_000
-  const list = capacitorValues(design)
-  const least = RESERVOIR_RATIO * converter.samplingCapacitance
-  const wantedC = 1 / (2 * Math.PI * corner * (fixedR || Math.max(PREFERRED_RESISTANCE, leastR)))
-  const allowed = list.filter((c) => c >= least)
-  const capacitance = fixedC || closest(wantedC, allowed.length > 0 ? allowed : list)
-  const wantedResistance = 1 / (2 * Math.PI * corner * capacitance)
-  const resistors =
-    parts.resistors.stock.length > 0
-      ? parts.resistors.stock
-      : standardValues(parts.resistors.series, 1, parts.resistors.maximum)
-  const enough = resistors.filter((r) => r >= leastR)
-  const resistance = fixedR || closest(wantedResistance, enough.length > 0 ? enough : resistors)
+/** R9 and C9 that a person fixed, in `choose.values` or `choose.drive`; undefined where free. */
+export function fixedDrive({ choose }: Design): { R: number | undefined; C: number | undefined } {
   return {
-    kind: 'rc',
-    resistance,
-    capacitance,
-    corner: 1 / (2 * Math.PI * resistance * capacitance),
-    wantedCorner: corner,
-    wantedResistance,
+    R: (choose.values?.R9 ?? choose.drive?.resistance) || undefined,
+    C: (choose.values?.C9 ?? choose.drive?.capacitance) || undefined,
   }
+}
+
+/** What R9 and C9 may be, ascending, Ω and F: values that a person fixed, else the series or the stock. */
+export function driveLists(design: Design): { R: readonly number[]; C: readonly number[] } {
+  const { resistors } = design.parts
+  const fixed = fixedDrive(design)
+  const all =
+    resistors.stock.length > 0
+      ? ascending(resistors.stock)
+      : standardValues(resistors.series, 1, resistors.maximum)
+  const enough = all.filter((r) => r >= clampResistance(design))
+  const list = capacitorValues(design)
+  const reservoirs = list.filter((c) => c >= RESERVOIR_RATIO * design.converter.samplingCapacitance)
+  return {
+    R: fixed.R !== undefined ? [fixed.R] : enough.length > 0 ? enough : all,
+    C: fixed.C !== undefined ? [fixed.C] : reservoirs.length > 0 ? reservoirs : list,
+  }
+}
+
+/**
+ * R9 and C9 for a corner 1/(2πRC) (Hz): C is the standard value that brings R nearest to 1 kΩ and stays at least
+ * 20 times the sampling capacitance; R is then the nearest standard value that spares the converter's clamp.
+ */
+export function sizeRc(design: Design, corner: number): { R: number; C: number; wantedR: number } {
+  const lists = driveLists(design)
+  const fixed = fixedDrive(design)
+  const aimedR = fixed.R ?? Math.max(PREFERRED_RESISTANCE, clampResistance(design))
+  const C = closest(1 / (2 * Math.PI * corner * aimedR), lists.C)
+  const wantedR = 1 / (2 * Math.PI * corner * C)
+  return { R: closest(wantedR, lists.R), C, wantedR }
 }
 
 /**
@@ -89,33 +59,28 @@ export function clampResistance(design: Design): number {
 }
 
 /** The member of a list nearest by ratio. */
-function closest(value: number, list: readonly number[]): number {
+export function closest(value: number, list: readonly number[]): number {
   const distance = (x: number) => Math.abs(Math.log(x / value))
   return list.reduce((best, x) => (distance(x) < distance(best) ? x : best), list[0] ?? value)
 }
 
-function capacitorValues(design: Design): readonly number[] {
+export function capacitorValues(design: Design): readonly number[] {
   const { stock, series, minimum, maximum } = design.parts.capacitors
-  return stock.length > 0 ? [...stock].sort((a, b) => a - b) : standardValues(series, minimum, maximum)
+  return stock.length > 0 ? ascending(stock) : standardValues(series, minimum, maximum)
 }
 
-/**
- * Time for a full-span step to settle to `criterion` LSB through one pole: τ·ln(2^N/criterion)
- * (method: converter settling by the number of time constants; s).
- */
-export function settlingTime(filter: RcFilter, bits: number, criterion: number): number {
-  return filter.resistance * filter.capacitance * Math.log(2 ** bits / criterion)
+export function resistorValues(design: Design): readonly number[] {
+  const { stock, series, minimum, maximum } = design.parts.resistors
+  return stock.length > 0 ? ascending(stock) : standardValues(series, minimum, maximum)
 }
 
-/** The filter with a source resistance (Ω) in series: what the signal really meets. */
-export function loadedBy(filter: RcFilter, sourceResistance: number): RcFilter {
-  if (filter.kind === 'none') return filter
-  const resistance = filter.resistance + sourceResistance
-  return { ...filter, resistance, corner: 1 / (2 * Math.PI * resistance * filter.capacitance) }
-}
+const sorted = new WeakMap<readonly number[], readonly number[]>()
 
-/** Attenuation of one pole at a frequency, dB (positive: weaker). */
-export function attenuationDb(filter: RcFilter, frequency: number): number {
-  if (filter.kind === 'none') return 0
-  return 10 * Math.log10(1 + (frequency / filter.corner) ** 2)
+/** Distinct values in ascending order; one stock gives the same list again. */
+function ascending(stock: readonly number[]): readonly number[] {
+  const known = sorted.get(stock)
+  if (known) return known
+  const list = [...new Set(stock)].sort((a, b) => a - b)
+  sorted.set(stock, list)
+  return list
 }

@@ -105,10 +105,14 @@ function notFinite(element: object, owner = (element as { ref?: string }).ref ??
     if (typeof value === 'number' && !Number.isFinite(value)) {
       return `${owner} has ${key} ${value}; it needs a finite number`
     }
-    if (typeof value === 'object' && value !== null) {
+    if (typeof value === 'object' && value !== null && !known.has(value)) {
       const fault = notFinite(value, owner)
       if (fault) return fault
+      known.add(value)
     }
   }
   return null
 }
+
+/** Parts found to be in order: every amplifier of every chain of a plan has the same one. */
+const known = new WeakSet<object>()

@@ -80,6 +80,8 @@ export interface Resistor extends ElementBase {
   fixed: boolean
   /** Parts made on one substrate share a group. */
   group: string | null
+  /** True where it is no resistor of its own: the noise figures of the part that it models count its share. */
+  noiseless?: boolean
 }
 
 export interface Capacitor extends ElementBase {

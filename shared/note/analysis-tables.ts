@@ -1,6 +1,6 @@
-import type { Candidate, HeadroomEntry, Load, ModelEntry, OverVoltage } from '#shared/design/plan.ts'
+import type { HeadroomEntry, Load, ModelEntry, OverVoltage } from '#shared/design/plan.ts'
 import { formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
-import { figure, margin, NONE, reached, sentence, signed, sized, uncapital, upward } from './figures.ts'
+import { figure, margin, NONE, reached, sentence, uncapital, upward } from './figures.ts'
 import type { Row, Statement, Table } from './types.ts'
 
 interface Quantity {
@@ -167,58 +167,3 @@ export function toOverVoltageTable(cases: readonly OverVoltage[]): Table {
     })),
   }
 }
-
-/** Lines printed one by one; the rest is summed. */
-const LINES = 16
-
-/**
- * First-order worst case at both ends in the measurand's unit, largest first, with totals.
- * `slope` is volts at the converter per unit of the measurand.
- */
-export function toToleranceTable(
-  tolerance: NonNullable<Candidate['tolerance']>,
-  slope: number,
-  unit: string,
-): Table {
-  const size = (line: { low: number; high: number }) => Math.max(Math.abs(line.low), Math.abs(line.high))
-  const sorted = [...tolerance.lines].sort((a, b) => size(b) - size(a) || (a.id < b.id ? -1 : 1))
-  const shown = sorted.slice(0, LINES)
-  const rest = sorted.slice(LINES)
-  const largest = Math.max(Math.abs(tolerance.worst.low), Math.abs(tolerance.worst.high)) / Math.abs(slope)
-  const rows = shown.map((line): Row => ({
-    cells: [
-      line.label,
-      `±${limitText(line.limit, line.unit)}`,
-      signed(line.low / slope, largest, unit),
-      signed(line.high / slope, largest, unit),
-    ],
-  }))
-  const both = (title: string, ends: { low: number; high: number }): string[] => [
-    title,
-    '',
-    `±${sized(ends.low / slope, largest, unit)}`,
-    `±${sized(ends.high / slope, largest, unit)}`,
-  ]
-  if (rest.length > 0) {
-    const sum = (end: 'low' | 'high') => rest.reduce((total, line) => total + Math.abs(line[end]), 0)
-    rows.push({ cells: both(`All others, ${rest.length} lines`, { low: sum('low'), high: sum('high') }) })
-  }
-  rows.push(
-    { cells: both('Worst case, sum of all', tolerance.worst), total: true },
-    { cells: both('Root of the sum of squares', tolerance.rss) },
-  )
-  return {
-    columns: [
-      { title: 'What varies', share: 46, strong: true },
-      { title: 'Limit', share: 18, align: 'right' },
-      { title: 'At the low end', share: 18, align: 'right' },
-      { title: 'At the high end', share: 18, align: 'right' },
-    ],
-    rows,
-  }
-}
-
-const limitText = (limit: number, unit: string): string =>
-  unit === ''
-    ? formatQuantity(limit, '', { digits: 3, display: 'percent' })
-    : formatQuantity(limit, unit, { digits: 3 })

@@ -2,6 +2,7 @@ import type { Candidate, Plan } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
 import { count, figure, NONE, room, share, uncapital, upward } from './figures.ts'
+import { stateWords } from './quality-tables.ts'
 import { findLeastRoom, toLinearSpan, toSlope, toWorstEndError, type Span } from './span.ts'
 import type { Answer } from './types.ts'
 
@@ -72,15 +73,24 @@ function errorAsBuilt(design: Design, plan: Plan, candidate: Candidate): Answer 
     : null
   const small = nominal === null ? [] : [`Nominal parts miss the end points by ${upward(nominal, unit)}`]
   if (slope === null) return { label: 'Error as built, worst case', figure: NONE, small }
-  if (candidate.tolerance) {
-    // The tolerances act about the nominal end points, which miss their targets already.
-    const { worst } = candidate.tolerance
+  if (candidate.budget) {
+    const { totals, target, perQuantity } = candidate.budget
+    const state = target?.state ?? 'calibrated'
+    const expanded = upward(totals[state].expanded / perQuantity, unit)
+    // The errors act about the nominal end points, which miss their targets already.
     const missed = candidate.realised?.endpointError ?? { low: 0, high: 0 }
-    const volts = Math.max(
-      Math.abs(worst.low) + Math.abs(missed.low),
-      Math.abs(worst.high) + Math.abs(missed.high),
-    )
-    return { label: 'Error as built, worst case', figure: `±${upward(volts / slope, unit)}`, small }
+    const volts = totals.asBuilt.worst + Math.max(Math.abs(missed.low), Math.abs(missed.high))
+    return {
+      label: `Expanded uncertainty, ${uncapital(stateWords[state])}`,
+      figure: `±${expanded}`,
+      small: [
+        target
+          ? `Required: ±${formatQuantity(target.limit / perQuantity, unit, { digits: 3 })}`
+          : 'No target is stated',
+        `As built, worst case: ±${upward(volts / perQuantity, unit)}`,
+      ],
+      ...(target && !target.met ? { state: 'over' as const } : {}),
+    }
   }
   const ends = toWorstEndError(candidate, plan)
   return {

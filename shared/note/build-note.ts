@@ -1,5 +1,6 @@
 import type { Candidate, Plan } from '#shared/design/plan.ts'
 import { designSchema, type Design, type DesignDocument } from '#shared/design/schema.ts'
+import type { Spread } from '#shared/studies/types.ts'
 import { toAnswers } from './answers.ts'
 import { toClipText } from './analysis-tables.ts'
 import { toCautions, toConditions } from './conditions.ts'
@@ -13,13 +14,15 @@ export interface NoteInput {
   document: DesignDocument
   plan: Plan
   context: NoteContext
+  /** Monte Carlo run of the chosen candidate; absent: the note has no such sheet. */
+  spread?: Spread | null
 }
 
 /**
  * Everything that a design note says, in the order of its sheets. Pure: the same design, plan and context give the
  * same note. Throws ZodError for a document that is not a design.
  */
-export function buildNote({ document, plan, context }: NoteInput): Note {
+export function buildNote({ document, plan, context, spread = null }: NoteInput): Note {
   const design = designSchema.parse(document)
   const candidate = plan.chosen === null ? null : (plan.candidates[plan.chosen] ?? null)
   const date = context.date.slice(0, 10)
@@ -40,7 +43,7 @@ export function buildNote({ document, plan, context }: NoteInput): Note {
       right: context.demo ? 'Demonstration data' : '',
     },
     first: toFirstSheet(design, plan, candidate, context),
-    groups: toGroups({ document, design, plan, candidate }),
+    groups: toGroups({ document, design, plan, candidate, spread }),
   }
 }
 

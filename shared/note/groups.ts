@@ -1,12 +1,12 @@
 import type { Candidate, Equation, Plan } from '#shared/design/plan.ts'
 import type { Design, DesignDocument } from '#shared/design/schema.ts'
+import type { Spread } from '#shared/studies/types.ts'
 import { formatRange } from '#shared/units/format-quantity.ts'
 import {
   toHeadroomTable,
   toLoadTable,
   toModelTable,
   toOverVoltageTable,
-  toToleranceTable,
   toVerdicts,
 } from './analysis-tables.ts'
 import { toCandidatesTable, toDrawnRef, toPicksTable } from './candidates-table.ts'
@@ -15,7 +15,7 @@ import { toDesignValues } from './design-values.ts'
 import { figure } from './figures.ts'
 import { toFindings } from './findings.ts'
 import { toPickSentence } from './parts-table.ts'
-import { toSlope } from './span.ts'
+import { toQualitySections } from './quality-sections.ts'
 import { toTransferSentence, toTransferTable } from './transfer.ts'
 import type { Block, Section, SheetGroup } from './types.ts'
 
@@ -24,6 +24,7 @@ interface Input {
   design: Design
   plan: Plan
   candidate: Candidate | null
+  spread: Spread | null
 }
 
 /** The sheets after the first one; sections without content are left out, tables numbered as they come. */
@@ -44,8 +45,13 @@ export function toGroups(input: Input): SheetGroup[] {
       model(input, candidate, number),
       loads(candidate, number),
       overVoltage(candidate, number),
-      tolerance(input, candidate, number),
     ])
+  if (candidate)
+    add(
+      'quality',
+      'Error, spread, noise, filter and drive',
+      toQualitySections({ design: input.design, plan: input.plan, candidate, spread: input.spread, number }),
+    )
   add('basis', 'Transfer, assumptions and candidates', [
     candidate ? transfer(input, candidate, number) : null,
     section('assumptions', 'Assumptions', [{ type: 'list', items: toAssumptions(input.design, candidate) }]),
@@ -155,42 +161,15 @@ function overVoltage(candidate: Candidate, number: () => number): Section | null
   )
 }
 
-function tolerance({ design }: Input, candidate: Candidate, number: () => number): Section | null {
-  const slope = toSlope(candidate, design.sensor.quantity)
-  if (!candidate.tolerance || slope === null) return null
-  return section(
-    'tolerance',
-    `Table ${number()}. Worst case of tolerances`,
-    [{ type: 'table', table: toToleranceTable(candidate.tolerance, slope, design.sensor.quantity.unit) }],
-    'first order, as built, before any calibration',
-  )
-}
-
 function transfer({ design, plan }: Input, candidate: Candidate, number: () => number): Section | null {
   const table = toTransferTable(design, plan, candidate)
   if (!table) return null
   const blocks: Block[] = [
     { type: 'text', text: toTransferSentence(design, candidate) },
-    { type: 'transfer' },
+    { type: 'figure', draws: 'transfer' },
     { type: 'table', table },
   ]
-  const filter = filterText(design, candidate)
-  if (filter) blocks.push({ type: 'text', text: filter })
   return section('transfer', `Figure 3 and table ${number()}. Transfer`, blocks)
-}
-
-function filterText(design: Design, candidate: Candidate): string | null {
-  const { filter } = candidate
-  if (filter?.kind !== 'rc') return null
-  const parts = [
-    `The filter before the converter, ${figure(filter.resistance, 'Ω')} and ${figure(filter.capacitance, 'F')}, has its corner at ${figure(filter.corner, 'Hz')}`,
-    `and settles a full step to ${figure(design.rules.settling, 'LSB')} in ${figure(filter.settling, 's')}.`,
-  ]
-  if (filter.droopAtBandwidth !== null)
-    parts.push(`At the signal's bandwidth it takes ${figure(Math.abs(filter.droopAtBandwidth), 'dB')}.`)
-  if (filter.atHalfSampleRate !== null)
-    parts.push(`At half the sample rate it takes ${figure(Math.abs(filter.atHalfSampleRate), 'dB')}.`)
-  return parts.join(' ')
 }
 
 function netlist(text: string): Section {

@@ -93,13 +93,16 @@ export interface TransferFigure {
   points: TransferPoint[]
 }
 
+/** Drawings between the tables. */
+export type FigureName = 'transfer' | 'errors' | 'spread' | 'noise' | 'response'
+
 export type Block =
   | { type: 'text'; text: string }
   | { type: 'list'; items: string[] }
   | { type: 'statements'; items: Statement[] }
   | { type: 'table'; table: Table }
   | { type: 'equations'; items: EquationLine[] }
-  | { type: 'transfer' }
+  | { type: 'figure'; draws: FigureName }
   | { type: 'code'; lines: string[] }
   | { type: 'values'; groups: ValueGroup[] }
 

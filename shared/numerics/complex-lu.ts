@@ -24,6 +24,8 @@ export function factorComplexLu(matrix: ComplexVector, size: number): ComplexLu 
   const im = matrix.im.slice()
   const order = new Int32Array(size)
   const scale = new Float64Array(size)
+  /** Columns in which the pivot row has an entry: most of a circuit's are empty and change nothing. */
+  const filled = new Int32Array(size)
   for (let i = 0; i < size; i++) {
     order[i] = i
     let largest = 0
@@ -55,6 +57,9 @@ export function factorComplexLu(matrix: ComplexVector, size: number): ComplexLu 
     const pivotRe = re[pivotRow + k]!
     const pivotIm = im[pivotRow + k]!
     const pivotSquare = pivotRe * pivotRe + pivotIm * pivotIm
+    let count = 0
+    for (let j = k + 1; j < size; j++)
+      if (re[pivotRow + j]! !== 0 || im[pivotRow + j]! !== 0) filled[count++] = j
     for (let i = k + 1; i < size; i++) {
       const row = i * size
       const entryRe = re[row + k]!
@@ -64,7 +69,8 @@ export function factorComplexLu(matrix: ComplexVector, size: number): ComplexLu 
       const factorIm = (entryIm * pivotRe - entryRe * pivotIm) / pivotSquare
       re[row + k] = factorRe
       im[row + k] = factorIm
-      for (let j = k + 1; j < size; j++) {
+      for (let n = 0; n < count; n++) {
+        const j = filled[n]!
         const r = re[pivotRow + j]!
         const m = im[pivotRow + j]!
         re[row + j]! -= factorRe * r - factorIm * m

@@ -48,10 +48,39 @@ export function drawFeedback(
   })
 }
 
+/** From a row to a part that leads over it from a node of the row to the output. */
+const OVER = 56
+
+/**
+ * Parts from a node of the row to the output (filter sections), lying above row `y`. Both columns are drawn, the right
+ * one down to `out`.
+ */
+function drawOver(
+  sheet: Sheet,
+  cell: AmplifierCell,
+  spots: ReadonlyMap<string, Spot>,
+  out: Spot,
+  y: number,
+): boolean {
+  let row = y
+  for (const [node, spot] of spots) {
+    if (node === cell.m || node === cell.out) continue
+    for (const device of sheet.openAt(node).filter((d) => farEnd(d, node) === cell.out)) {
+      const left = { x: snap((spot.x + out.x - LENGTH) / 2), y: row }
+      sheet.wire(node, [spot.x, spot.y], [spot.x, row], [left.x, row])
+      const right = sheet.across(device, node, left)
+      sheet.wire(cell.out, [right.x, row], [out.x, row], [out.x, out.y])
+      row -= ROW
+    }
+  }
+  return row !== y
+}
+
 /** Signal at the + input: it lies above, the feedback below, what the − input hangs on further below. */
 export function drawSignalAtPlus(sheet: Sheet, cell: AmplifierCell, way: Way, start: Spot): Spot {
   const feedback = feedbackOf(sheet, cell)
-  const end = drawRow(sheet, way, start)
+  const spots = new Map<string, Spot>()
+  const end = drawRow(sheet, way, start, new Set(), spots)
   const y = end.y + PIN
   if (cell.m === cell.out) {
     const back = end.x + BACK
@@ -68,7 +97,10 @@ export function drawSignalAtPlus(sheet: Sheet, cell: AmplifierCell, way: Way, st
       [back - LEAD, pins.minus.y],
       [back, pins.minus.y],
     )
-    return out
+    const beyond = { x: out.x + TIP, y }
+    if (!drawOver(sheet, cell, spots, beyond, end.y - OVER)) return out
+    sheet.wire(cell.out, [out.x, y], [beyond.x, y])
+    return beyond
   }
   const column = end.x + LEAD
   const back = column + BACK
@@ -94,7 +126,8 @@ export function drawSignalAtPlus(sheet: Sheet, cell: AmplifierCell, way: Way, st
 /** Signal at the − input: it lies above with the feedback over it, the + input is fed from below. */
 export function drawSignalAtMinus(sheet: Sheet, cell: AmplifierCell, way: Way, start: Spot): Spot {
   const feedback = feedbackOf(sheet, cell)
-  const end = drawRow(sheet, way, start, new Set(feedback))
+  const spots = new Map<string, Spot>()
+  const end = drawRow(sheet, way, start, new Set(feedback), spots)
   const y = end.y + PIN
   const column = end.x + 8
   const back = column + BACK
@@ -104,6 +137,8 @@ export function drawSignalAtMinus(sheet: Sheet, cell: AmplifierCell, way: Way, s
   sheet.wire(cell.m, [column, end.y], [back, end.y])
   sheet.wire(cell.out, [pins.out.x, y], [out.x, y])
   drawFeedback(sheet, cell, feedback, { minus: { x: column, y: end.y }, out, y: y - FEEDBACK, step: -ROW })
+  const last = y - FEEDBACK - (feedback.length - 1) * ROW
+  drawOver(sheet, cell, spots, { x: out.x, y: last }, last - ROW)
   const foot = { x: back - LEAD, y: pins.plus.y }
   sheet.wire(cell.p, [back, foot.y], [foot.x, foot.y])
   feed(sheet, cell.p, foot)

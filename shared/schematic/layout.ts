@@ -84,7 +84,7 @@ function drawChain(sheet: Sheet): boolean {
   return graph.devices.every((d) => sheet.isPlaced(d)) && graph.cells.every((c) => drawn.has(c.ref))
 }
 
-const stageOrder = ['source', 'S1', 'level', 'S2', 'filter', 'converter']
+const stageOrder = ['source', 'S1', 'level', 'S2', 'F1', 'F2', 'F3', 'filter', 'converter']
 
 function inSignalOrder(parts: readonly SchematicPart[]): SchematicPart[] {
   const rank = (stage: string) =>

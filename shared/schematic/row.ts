@@ -38,9 +38,16 @@ const GAP = 16
 
 /**
  * Draws a way on one row, parts in series lying, what goes to ground or to a reference hanging below.
- * `keep` names parts that belong elsewhere (feedback). Returns where the row ends.
+ * `keep` names parts that belong elsewhere (feedback); `spots` takes the place of each node behind a part. Returns where
+ * the row ends.
  */
-export function drawRow(sheet: Sheet, way: Way, start: Spot, keep: ReadonlySet<Device> = new Set()): Spot {
+export function drawRow(
+  sheet: Sheet,
+  way: Way,
+  start: Spot,
+  keep: ReadonlySet<Device> = new Set(),
+  spots = new Map<string, Spot>(),
+): Spot {
   const reserved = new Set([...keep, ...way.steps.map((s) => s.device)])
   let at = drawShunts(sheet, way.from, start, reserved)
   let node = way.from
@@ -51,6 +58,7 @@ export function drawRow(sheet: Sheet, way: Way, start: Spot, keep: ReadonlySet<D
     const right = sheet.across(device, node, left)
     const end = { x: right.x + Math.max(GAP, snap(spare)), y: right.y }
     sheet.wire(next, [right.x, right.y], [end.x, end.y])
+    spots.set(next, end)
     at = drawShunts(sheet, next, end, reserved)
     node = next
   }
@@ -67,7 +75,7 @@ function drawShunts(sheet: Sheet, node: string, start: Spot, reserved: ReadonlyS
     sheet.wire(node, [at.x, at.y], [column.x, column.y])
     sheet.wire(node, [column.x, column.y], [column.x, column.y + LEAD])
     const foot = sheet.down(device, node, { x: column.x, y: column.y + LEAD })
-    feed(sheet, next, foot)
+    feed(sheet, next, foot, 'beside')
     const beside = Math.max(
       sheet.labelWidth(device) + 10,
       next === GROUND ? 8 : sheet.terminalWidth(next) / 2,

@@ -195,17 +195,18 @@ export class Sheet {
   }
 
   /** A terminal for a held node, at the end of a wire that arrives from `from`'s opposite side. */
-  terminal(node: string, x: number, y: number, side: 'left' | 'below' | 'above'): void {
+  terminal(node: string, x: number, y: number, side: 'left' | 'below' | 'beside' | 'above'): void {
     const [name, value] = this.terminalWords(node)
     const cx = side === 'left' ? x - TERMINAL : x
-    const cy = side === 'below' ? y + TERMINAL : side === 'above' ? y - TERMINAL : y
+    const cy = side === 'below' || side === 'beside' ? y + TERMINAL : side === 'above' ? y - TERMINAL : y
     const words: TextShape[] = []
     const lines: [string, 'value' | 'label'][] = []
     if (value) lines.push([value, 'value'])
     lines.push([name, 'label'])
     lines.forEach(([content, style], i) => {
       const shift = i - (lines.length - 1) / 2
-      if (side === 'left')
+      // Beside a column that ends in it: on the side away from the amplifier and its own columns.
+      if (side === 'left' || side === 'beside')
         words.push(text(style, cx - 8, cy + 4 + shift * 12, content, 'end', { on: 'sheet' }))
       else
         words.push(

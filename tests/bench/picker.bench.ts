@@ -8,15 +8,7 @@ import {
 import { toProblem } from '#shared/amplifiers/picker/problem.ts'
 import { type SeriesName, standardValues } from '#shared/parts/series.ts'
 import { seeded } from '#tests/shared/picker/scenarios.ts'
-
-/** One measured line. `met` is null where nothing is required of it. */
-export interface Row {
-  what: string
-  value: number
-  unit: string
-  required: string
-  met: boolean | null
-}
+import { milliseconds, quantile, toRow, type Bound, type Row } from './rows.ts'
 
 type Random = () => number
 type Pair = [number, number]
@@ -140,13 +132,7 @@ function listsRow(): Row {
     milliseconds(() => pickValues({ ...base, pairs: [{ refs: ['Rf', 'Rg'], minimumSum: 1 + i }] })),
   )
   const value = Math.min(...times)
-  return {
-    what: 'picker: table of E96 pairs, three decades',
-    value,
-    unit: 'ms',
-    required: '≤ 30 ms',
-    met: value <= 30,
-  }
+  return toRow('picker: table of E96 pairs, three decades', value, 'ms', { most: 30 }, 'Picker: lists, once')
 }
 
 function kindRows(kind: Kind): Row[] {
@@ -165,28 +151,32 @@ function kindRows(kind: Kind): Row[] {
   const same = ofFull.ok && Math.abs(ofFull.optimum - full.optimum) < 1e-10
   const ratioFull = (full.milliseconds * 1e3) / quantile(timeAll(coarse), 0.5)
   const four = kind.resistors === 4
-  const name = `picker: ${kind.name}`
+  const group = four ? 'Picker, four resistors' : 'Picker, three resistors'
+  const rows: [string, number, string, Bound, string][] = [
+    ['E96, median', median, 'µs', four ? { most: 50 } : {}, 'E96: median'],
+    ['E96, 99th percentile', slow, 'µs', four ? { most: 2000 } : {}, 'E96: 99 %'],
+    ['E96, exhaustive over median', ratio, '×', { least: four ? 100_000 : 1000 }, 'exhaustive over median'],
+    [
+      'E96, exhaustive over 99th percentile',
+      ratioSlow,
+      '×',
+      four ? { least: 10_000 } : {},
+      'exhaustive over 99 %',
+    ],
+    ['E24 in full over median', ratioFull, '×', four ? { least: 1000 } : {}, 'E24 in full over median'],
+  ]
   return [
-    row(`${name}, E96, median`, median, 'µs', four ? { most: 50 } : {}),
-    row(`${name}, E96, 99th percentile`, slow, 'µs', four ? { most: 2000 } : {}),
-    row(`${name}, E96, exhaustive over median`, ratio, '×', { least: four ? 100_000 : 1000 }),
-    row(`${name}, E96, exhaustive over 99th percentile`, ratioSlow, '×', four ? { least: 10_000 } : {}),
-    row(`${name}, E24 in full over median`, ratioFull, '×', four ? { least: 1000 } : {}),
+    ...rows.map(([what, value, unit, bound, headline]) =>
+      toRow(`picker: ${kind.name}, ${what}`, value, unit, bound, `${group}, ${headline}`),
+    ),
     {
-      what: `${name}, E24 in full, same optimum`,
+      what: `picker: ${kind.name}, E24 in full, same optimum`,
       value: full.optimum,
       unit: '',
       required: 'equal',
       met: same,
     },
   ]
-}
-
-function row(what: string, value: number, unit: string, bound: { most?: number; least?: number }): Row {
-  const { most, least } = bound
-  if (most !== undefined) return { what, value, unit, required: `≤ ${most} ${unit}`, met: value <= most }
-  if (least !== undefined) return { what, value, unit, required: `≥ ${least} ${unit}`, met: value >= least }
-  return { what, value, unit, required: '', met: null }
 }
 
 /** A target that the arrangement's ideal equations can meet, with guard bands and source resistances as they occur. */
@@ -225,16 +215,6 @@ function timeAll(requests: PickRequest[]): number[] {
       return least
     })
     .sort((a, b) => a - b)
-}
-
-function quantile(sorted: number[], share: number): number {
-  return sorted[Math.min(sorted.length - 1, Math.floor(sorted.length * share))] as number
-}
-
-function milliseconds(work: () => unknown): number {
-  const start = performance.now()
-  work()
-  return performance.now() - start
 }
 
 /** Exhaustive search, timed when warm. */

@@ -1,4 +1,4 @@
-import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { planDesign } from '#shared/design/plan-design.ts'
 import type { DesignDocument } from '#shared/design/schema.ts'
 import { EnginePool } from '#server/workers/engine-pool.ts'
@@ -44,5 +44,33 @@ describe('the engine’s workers', () => {
     await expect(hasty.run({ kind: 'plan', document: buildDesign() })).rejects.toMatchObject({ code: 'busy' })
     await hasty.close()
     await expect(hasty.run({ kind: 'plan', document: buildDesign() })).rejects.toMatchObject({ code: 'busy' })
+  })
+
+  it('end without work after a while, and the next job starts a new one', async () => {
+    const brief = new EnginePool({ workers: 1, idle: 20 })
+    const first = await brief.run({ kind: 'plan', document: buildDesign() })
+    expect(brief.size).toBe(1)
+    await vi.waitFor(() => expect(brief.size).toBe(0))
+    expect(await brief.run({ kind: 'plan', document: buildDesign() })).toEqual(first)
+    await brief.close()
+  })
+
+  it('refuse a job that is not theirs', async () => {
+    await expect(pool.run({ kind: 'check', document: buildDesign() })).rejects.toThrow('The engine failed.')
+  })
+})
+
+describe('the worker with the simulator', () => {
+  it('checks one design after the other, and answers null where the plan chose nothing', async () => {
+    const checks = new EnginePool({ script: 'check-worker', workers: 1 })
+    const [one, two, none] = await Promise.all([
+      checks.run({ kind: 'check', document: buildDesign('One') }),
+      checks.run({ kind: 'check', document: buildDesign('Two') }),
+      checks.run({ kind: 'check', document: { ...buildDesign(), rails: { positive: 0.5 } } }),
+    ])
+    expect(one?.ok).toBe(true)
+    expect(two).toEqual(one)
+    expect(none).toBeNull()
+    await checks.close()
   })
 })

@@ -2,6 +2,9 @@ import { execFileSync } from 'node:child_process'
 import { writeFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { draftContext } from '#server/features/note/note-context.ts'
+import { createEngine } from '#server/lib/create-engine.ts'
+import { EnginePool } from '#server/workers/engine-pool.ts'
 import {
   buildChannel,
   buildDesign,
@@ -44,6 +47,29 @@ describe('POST /api/note', () => {
     expect(text).toContain('Cross current, weir 2')
     expect(text).toContain('not for manufacture')
     expect(pageSize(body as Buffer)).toContain('letter')
+  })
+
+  it('carries the independent check', async () => {
+    const text = textOf((await send().expect(200)).body as Buffer)
+    expect(text).toContain('Independent check')
+    expect(text).toMatch(/Operating point, low\s+end/)
+    expect(text).not.toContain('nothing was compared')
+  })
+
+  it('is made all the same where the simulator fails, and says so', async () => {
+    // A worker that knows nothing of checks refuses the job.
+    const silent = new EnginePool({ script: 'engine-worker' })
+    const engine = createEngine(false, new EnginePool(), silent)
+    const context = draftContext({
+      workspaceName: 'Upper Weir',
+      authorName: 'Ines Marten',
+      date: '2026-01-05',
+      paper: 'A4',
+      demo: false,
+    })
+    const bytes = await engine.note(buildDesign(), context)
+    expect(textOf(bytes)).toContain('nothing was compared')
+    await engine.close()
   })
 
   it('takes A4 where no paper is named', async () => {

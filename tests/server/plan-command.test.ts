@@ -69,6 +69,28 @@ describe('the plan command', () => {
     expect(err).toContain('Written:')
   })
 
+  it('checks the plan in the simulator on request: in the plan, and as a table beside it', async () => {
+    const { code, out, err } = await plan([save('checked.json', buildDesign()), '--check'])
+    expect(code).toBe(0)
+    const printed = JSON.parse(out) as Plan
+    const check = printed.candidates[printed.chosen ?? -1]?.check
+    expect(check?.ok).toBe(true)
+    expect(check?.lines.length).toBeGreaterThanOrEqual(7)
+    for (const line of check?.lines ?? []) expect(err).toContain(line.what)
+    expect(err).toContain('The simulator agrees.')
+    const { check: _, ...rest } = printed.candidates[printed.chosen ?? -1] ?? {}
+    expect(rest).toEqual(
+      JSON.parse(JSON.stringify(planDesign(buildDesign()).candidates[printed.chosen ?? -1])),
+    )
+  })
+
+  it('says so where there is nothing to check, with the code unchanged', async () => {
+    const design: DesignDocument = { ...buildDesign(), rails: { positive: 0.5 } }
+    const { code, err } = await plan([save('nothing.json', design), '--check'])
+    expect(code).toBe(1)
+    expect(err).toContain('No check: nothing was chosen.')
+  })
+
   it('prints the plan all the same where nothing is feasible, and ends with 1', async () => {
     const design: DesignDocument = {
       ...buildDesign(),

@@ -18,6 +18,18 @@ describe('POST /api/plan', () => {
     expect(server.store.count()).toBe(0)
   })
 
+  it('adds the independent check where it is asked for, and refuses another wish', async () => {
+    const { body } = await server.bare().post('/api/plan?check=true').send(buildDesign()).expect(200)
+    const plan = body as Plan
+    const { check, ...chosen } = plan.candidates[plan.chosen ?? -1] ?? {}
+    expect(check?.ok).toBe(true)
+    expect(check?.lines.some((line) => line.what.startsWith('Noise'))).toBe(true)
+    const own = planDesign(buildDesign())
+    expect(chosen).toEqual(JSON.parse(JSON.stringify(own.candidates[own.chosen ?? -1])))
+    await server.bare().post('/api/plan?check=yes').send(buildDesign()).expect(400)
+    await server.bare().post('/api/plan?check=true').send({}).expect(422)
+  })
+
   it.each([
     ['a missing span', { ...buildDesign(), sensor: undefined }, 'sensor'],
     [

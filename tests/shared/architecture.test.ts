@@ -19,6 +19,7 @@ const sharedOrder = [
   'shared/converters',
   'shared/budget',
   'shared/design',
+  'shared/studies',
   'shared/drawings',
   'shared/schematic',
   'shared/note',
@@ -27,7 +28,12 @@ const sharedOrder = [
 ]
 
 /** The words that designs and plans are written in: types of them are everybody's, code is not. */
-const vocabulary = ['shared/design/plan.ts', 'shared/design/schema.ts', 'shared/analysis/extremes.ts']
+const vocabulary = [
+  'shared/design/plan.ts',
+  'shared/design/schema.ts',
+  'shared/analysis/extremes.ts',
+  'shared/budget/error-input.ts',
+]
 
 /** Imports against the order that are still there. This list may only shrink. */
 const borders = [
@@ -156,6 +162,7 @@ describe('packages with one place', () => {
   it.each([
     ['@react-pdf/renderer', ['server/documents']],
     ['typeorm', ['server']],
+    ['eecircuit-engine', ['server/lib', 'client/lib']],
     ['express', ['server']],
     ['react-router-dom', ['client']],
     ['mathjs', ['shared/units']],

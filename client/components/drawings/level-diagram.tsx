@@ -10,6 +10,7 @@ import { chosenMark, moveChoice, type Choice } from './level-choice.ts'
 import { LevelBlocks } from './level-blocks.tsx'
 import { LevelStrip } from './level-strip.tsx'
 import { LevelFigures } from './level-table.tsx'
+import { useWidth } from './use-width.ts'
 
 export interface LevelDiagramProps {
   levels: readonly Level[]
@@ -20,6 +21,8 @@ export interface LevelDiagramProps {
   stale?: boolean
   /** Room to keep, as a fraction of the linear region. */
   rule?: number
+  /** Levels of the variant that it is held against, drawn dotted. */
+  kept?: readonly Level[]
   /** More choices beside the scale and the worst case. */
   children?: ReactNode
   /** Enter or a double click on a mark: go to the field that sets it. */
@@ -27,12 +30,17 @@ export interface LevelDiagramProps {
 }
 
 /** Level diagram of a chain with its table: what stays in sight at every step of a plan. */
-export function LevelDiagram({ levels, quantity, editing, stale, rule, children, onGo }: LevelDiagramProps) {
+export function LevelDiagram(props: LevelDiagramProps) {
+  const { levels, quantity, editing, stale, rule, kept, children, onGo } = props
   const id = useId()
   const { decimalSign, letterKeys } = usePreferences()
   const [mode, setMode] = useState<LevelMode>('share')
   const [worst, setWorst] = useState(true)
   const [choice, setChoice] = useState<Choice | null>(null)
+
+  const [holder, width] = useWidth(0, 2000, 0)
+  const column = columnFor(width, levels.length)
+  const measures = useMemo(() => ({ ...sheetMeasures, column }), [column])
 
   const figures = useMemo<FigureOptions>(
     () => ({
@@ -44,8 +52,15 @@ export function LevelDiagram({ levels, quantity, editing, stale, rule, children,
     [worst, quantity, rule, decimalSign],
   )
   const drawing = useMemo(
-    () => layoutLevelDiagram(levels, { ...figures, mode, editing: editing ?? null }),
-    [levels, figures, mode, editing],
+    () =>
+      layoutLevelDiagram(levels, {
+        ...figures,
+        mode,
+        editing: editing ?? null,
+        measures,
+        ...(kept ? { kept } : {}),
+      }),
+    [levels, figures, mode, editing, measures, kept],
   )
   const table = useMemo(() => levelTable(levels, figures), [levels, figures])
   const chosen = chosenMark(drawing.bays, choice)
@@ -98,7 +113,7 @@ export function LevelDiagram({ levels, quantity, editing, stale, rule, children,
           These are the last good levels: something typed cannot be read yet. They follow again when it can.
         </p>
       ) : null}
-      <div className="d-wide d-scroll">
+      <div ref={holder} className="d-wide d-scroll">
         <div
           className="d-keys"
           role="application"
@@ -111,7 +126,7 @@ export function LevelDiagram({ levels, quantity, editing, stale, rule, children,
           <LevelStrip
             drawing={drawing}
             gutter={sheetMeasures.gutter}
-            column={sheetMeasures.column}
+            column={column}
             choice={choice}
             onChoose={setChoice}
             onGo={go}
@@ -122,7 +137,7 @@ export function LevelDiagram({ levels, quantity, editing, stale, rule, children,
           table={table}
           caption={`Levels at each node${worst ? ', worst case over every board' : ''}`}
           gutter={sheetMeasures.gutter}
-          column={sheetMeasures.column}
+          column={column}
         />
         <p className="d-readout" aria-live="polite">
           {chosen ? <strong>{chosen.mark.words}</strong> : null}
@@ -135,6 +150,15 @@ export function LevelDiagram({ levels, quantity, editing, stale, rule, children,
     </figure>
   )
 }
+
+/** Widest that a bay's column grows on a wide page, px: beyond, neighbours would not be read together. */
+const WIDEST = 320
+
+/** Few nodes share the width of the page between them; many keep their size and scroll. */
+const columnFor = (width: number, nodes: number): number =>
+  Math.floor(
+    Math.min(WIDEST, Math.max(sheetMeasures.column, (width - sheetMeasures.gutter) / Math.max(1, nodes))),
+  )
 
 const modes: { value: LevelMode; words: string }[] = [
   { value: 'share', words: 'Share of region' },

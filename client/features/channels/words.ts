@@ -86,13 +86,16 @@ export function openWords(faults: readonly Fault[]): string {
 }
 
 export interface ErrorWords {
-  /** Worst-case end error in the measurand's unit; null where it is not known. */
+  /** Expanded uncertainty in the measurand's unit; null where it is not known. */
   error: number | null
   target: number | null
   text: string
 }
 
-/** Worst-case end-point error of any board against the target, in the measurand's unit, rounded up. */
+/**
+ * Expanded uncertainty against the target, in the state that the target is stated for, else as built; in the measurand's
+ * unit, rounded up.
+ */
 export function errorWords(plan: Plan | null, document: Draft, decimalSign: DecimalSign = '.'): ErrorWords {
   const quantity = document.sensor?.quantity
   const span = quantity ? Math.abs(quantity.high - quantity.low) : Number.NaN
@@ -100,12 +103,8 @@ export function errorWords(plan: Plan | null, document: Draft, decimalSign: Deci
   const target =
     limit === undefined || !quantity ? null : document.target?.per === 'quantity' ? limit : limit * span
   const chosen = plan ? chosenOf(plan) : null
-  const volts = plan ? Math.abs(plan.required.target.high - plan.required.target.low) : 0
-  const worst = chosen?.tolerance?.worst
-  const error =
-    worst && volts > 0 && Number.isFinite(span)
-      ? (Math.max(Math.abs(worst.low), Math.abs(worst.high)) / volts) * span
-      : null
+  const budget = chosen?.budget
+  const error = budget ? budget.totals[budget.target?.state ?? 'asBuilt'].expanded / budget.perQuantity : null
   const figure = (value: number) =>
     formatQuantity(value, quantity?.unit ?? '', { digits: 2, rounding: 'up', zeros: 'keep', decimalSign })
   if (error === null)

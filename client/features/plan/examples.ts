@@ -13,6 +13,10 @@ const converter = {
   sampleRate: 1000,
   samplingCapacitance: 1.5e-11,
   acquisitionTime: 2e-6,
+  offsetError: 5e-4,
+  gainError: 5e-4,
+  inl: 1,
+  noise: 6e-5,
   absolute: { low: -0.3, high: 3.6, clampCurrent: 0.005 },
   supply: 3.3,
 }

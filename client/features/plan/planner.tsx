@@ -14,6 +14,9 @@ import { Awaited, Failure } from '#client/components/states.tsx'
 import { TitleBlock, type TitleCell } from '#client/components/title-block.tsx'
 import { usePageTitle } from '#client/hooks/use-page-title.ts'
 import { announce } from '#client/lib/messages.ts'
+import type { Candidate, Plan } from '#shared/design/plan.ts'
+import { CompareView } from './compare/compare-view.tsx'
+import { useCompared } from './compare/use-compared.ts'
 import { misreadFields } from './draft/draft-state.ts'
 import { numberAt, textAt } from './draft/paths.ts'
 import { ActionBar } from './frame/action-bar.tsx'
@@ -30,6 +33,7 @@ import { stepNumber, stepOfPath, steps, stepTitle, type StepId } from './words/s
 import { StepForm } from './steps/step-form.tsx'
 import './styles/frame.css'
 import './styles/steps.css'
+import './styles/quality.css'
 import './styles/narrow.css'
 
 interface PlannerProps {
@@ -42,17 +46,25 @@ interface PlannerProps {
   readOnly: string | null
   /** Stands between the title block and the steps: conflicts, lost connection. */
   notice?: ReactNode
+  /** The draft held against its kept variant in place of a step. */
+  compares?: boolean
 }
 
 /** Most keystrokes change no level: the drawing is laid out again only when one of its own figures did. */
 const Diagram = memo(LevelDiagram)
 
 /** The plan with its steps: everything between the title block and the action bar, for visitors and channels alike. */
-export function Planner({ session, where, step, stepHref, cells, readOnly, notice }: PlannerProps) {
+export function Planner(props: PlannerProps) {
+  const { session, where, step, stepHref, cells, readOnly, notice, compares = false } = props
   const value = usePlannerValue({ session, where, step, stepHref, readOnly })
+  const compared = useCompared(value, compares)
   const { state, planning, candidate, findings, stale, goTo } = value
   const name = textAt(state.document, 'name')
-  usePageTitle(step ? `Step ${stepNumber(step)} of ${steps.length}: ${stepTitle(step)}` : 'Plan', name)
+  usePageTitle(
+    compares ? 'Compare' : step ? `Step ${stepNumber(step)} of ${steps.length}: ${stepTitle(step)}` : 'Plan',
+    name,
+  )
+  const keptLevels = compared.found ? chosenOf(compared.found.kept)?.levels : undefined
   usePlanKeys(value)
   useSpokenFindings(value)
   const quantity = useMeasurand(value)
@@ -75,7 +87,7 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
         <div className="plan-main">
           <div className="plan-work">
             {readOnly !== null && <p className="plan-read-only">{readOnly}</p>}
-            <StepForm />
+            {compares ? <CompareView compared={compared} /> : <StepForm />}
           </div>
           <div className="plan-diagram">
             {planning.status === 'failed' && (
@@ -93,6 +105,7 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
               quantity={quantity}
               editing={value.editing}
               stale={stale}
+              {...(keptLevels ? { kept: keptLevels } : {})}
               {...(planning.planned ? { rule: planning.planned.design.rules.room } : {})}
               onGo={handleGo}
             />
@@ -106,6 +119,9 @@ export function Planner({ session, where, step, stepHref, cells, readOnly, notic
     </PlannerProvider>
   )
 }
+
+const chosenOf = (plan: Plan): Candidate | null =>
+  plan.chosen === null ? null : (plan.candidates[plan.chosen] ?? null)
 
 /** Name, unit and span as the diagram needs them: of the plan where there is one, else of the draft. */
 function useMeasurand({ state, planning, quantity }: PlannerValue) {
@@ -122,7 +138,7 @@ function usePlannerValue({
   step,
   stepHref,
   readOnly,
-}: Omit<PlannerProps, 'cells' | 'notice'>): PlannerValue {
+}: Omit<PlannerProps, 'cells' | 'notice' | 'compares'>): PlannerValue {
   const state = useSyncExternalStore(session.draft.subscribe, session.draft.getState)
   const planning = useSyncExternalStore(session.planning.subscribe, session.planning.get)
   const [editing, setEditing] = useState<string | null>(null)
@@ -130,7 +146,7 @@ function usePlannerValue({
   const sensorKind = textAt(state.document, 'sensor.kind')
   const { planned } = planning
   const chosen = planned?.plan.chosen ?? null
-  const candidate = chosen === null ? null : (planned?.plan.candidates[chosen] ?? null)
+  const candidate = planned ? chosenOf(planned.plan) : null
   const findings = useMemo(
     () => listFindings({ document: state.document, typed: state.typed, planning, candidate, sensorKind }),
     [state.document, state.typed, planning, candidate, sensorKind],

@@ -26,7 +26,8 @@ export function ChannelPlanPage() {
   const { step } = useParams()
   const { workspaceId, projectId, channelId } = useRouteIds()
   const { data: channel, error, refetch } = useQuery(channelQuery(workspaceId, projectId, channelId))
-  if (!isStep(step)) return <NotFound />
+  const compares = step === 'compare'
+  if (!compares && !isStep(step)) return <NotFound />
   const retry = () => void refetch()
   if (error && !channel) return <QueryFailure error={error} what="The channel" onRetry={retry} />
   if (!channel)
@@ -44,10 +45,11 @@ export function ChannelPlanPage() {
         </div>
       </>
     )
-  return <ChannelPlan key={channel.id} channel={channel} step={step} />
+  return <ChannelPlan key={channel.id} channel={channel} step={isStep(step) ? step : null} />
 }
 
-function ChannelPlan({ channel, step }: { channel: Channel; step: StepId }) {
+/** `step` null: the draft held against its kept variant. */
+function ChannelPlan({ channel, step }: { channel: Channel; step: StepId | null }) {
   const { workspaceId, projectId } = useRouteIds()
   const channelId = channel.id
   const client = useQueryClient()
@@ -79,6 +81,7 @@ function ChannelPlan({ channel, step }: { channel: Channel; step: StepId }) {
       session={session}
       where={where}
       step={step}
+      compares={step === null}
       stepHref={stepHref}
       readOnly={may ? null : `Your role reads this channel; changing it takes ${whoMay('channel.update')}.`}
       cells={[

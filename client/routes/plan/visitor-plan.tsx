@@ -19,12 +19,14 @@ export function VisitorPlanPage() {
   const state = useSyncExternalStore(session.draft.subscribe, session.draft.getState)
   const saving = useSyncExternalStore(session.saving.subscribe, session.saving.get)
   const stepHref = useCallback((id: StepId) => paths.visitorPlan(id), [])
-  if (step !== undefined && !isStep(step)) return <NotFound />
+  const compares = step === 'compare'
+  if (step !== undefined && !compares && !isStep(step)) return <NotFound />
   return (
     <Planner
       session={session}
       where={place}
-      step={step ?? null}
+      step={isStep(step) ? step : null}
+      compares={compares}
       stepHref={stepHref}
       readOnly={null}
       cells={[

@@ -51,7 +51,9 @@ export const integratedInstrumentation = withLevels({
       string,
     ]
     const inner = innerAmplifier(part, gain)
-    const half = (name: string, p: string, m: string, out: string) =>
+    // Noise as the part states it, referred to the input: √(enIn² + (enOut/G)²), all of it at the + input.
+    const noisy = { ...inner, en: Math.hypot(part.enIn, part.enOut / gain), enCorner: part.enCorner }
+    const half = (name: string, p: string, m: string, out: string, halfPart = inner) =>
       stage.network.amplifier({
         ref: `${ref}${name}`,
         p,
@@ -59,12 +61,12 @@ export const integratedInstrumentation = withLevels({
         out,
         vpos: 'vpos',
         vneg: 'vneg',
-        part: inner,
+        part: halfPart,
         macro: ref,
         stage: stage.stage,
       })
     half('A', stage.nodes.n ?? '0', gm, xm)
-    half('B', stage.nodes.p, gp, xp)
+    half('B', stage.nodes.p, gp, xp, noisy)
     const internal = (name: string, a: string, b: string, value: number, tolerance: number) =>
       stage.network.resistor({
         ref: `R${ref}${name}`,
@@ -74,10 +76,12 @@ export const integratedInstrumentation = withLevels({
         tolerance,
         fixed: true,
         group: 'internal',
+        noiseless: true,
         stage: stage.stage,
       })
-    // The gain error is a limit on 1 + k/Rg, carried by the two internal resistors.
-    const spread = (part.gainError * gain) / Math.max(gain - 1, 1e-3)
+    // The gain error over temperature is a limit on 1 + k/Rg, carried by the two internal resistors.
+    const gainError = part.gainError + part.gainDrift * temperatureSpan(stage.design)
+    const spread = (gainError * gain) / Math.max(gain - 1, 1e-3)
     internal('A', xm, gm, part.k / 2, Math.min(spread, 0.5))
     internal('B', xp, gp, part.k / 2, Math.min(spread, 0.5))
     stage.resistor('Rg', gm, gp, values.Rg)
@@ -127,15 +131,23 @@ function addPins(
 /** Offsets referred to the input at this gain; rejection interpolated over gain on log axes. */
 function addErrors(stage: StageBuilder, ref: string, part: InstrumentationPart, gain: number): void {
   const design: Design = stage.design
-  const span = temperatureSpan(design)
   const middle = (design.rails.positive + design.rails.negative) / 2
   stage.errors.push({
     ref: `${ref}B`,
-    vos: part.vosIn + part.vosInDrift * span + (part.vosOut + part.vosOutDrift * span) / gain,
+    vos: part.vosIn + part.vosOut / gain,
+    vosDrift: part.vosInDrift + part.vosOutDrift / gain,
     bias: part.ib,
-    ib: part.ib,
     ios: part.ios,
-    mate: `${ref}A`,
+    doubling: 0,
+    integrated: {
+      part: ref,
+      mate: `${ref}A`,
+      output: `E${ref}`,
+      gain,
+      gainError: part.gainError,
+      gainDrift: part.gainDrift,
+      nonlinearity: part.nonlinearity,
+    },
     cmrr: 10 ** (-interpolate(part.cmrr, gain) / 20),
     psrr: 10 ** (-interpolate(part.psrr, gain) / 20),
     reference: middle,
@@ -177,7 +189,7 @@ function innerAmplifier(part: InstrumentationPart, gain: number): AmplifierPart 
     psrr: 200,
     en: 0,
     enCorner: 0,
-    in: 0,
+    in: part.in,
     inCorner: 0,
     slewRate: part.slewRate,
     inputLow: part.inputLow,

@@ -2,7 +2,7 @@ import { complex, divideComplex } from '#shared/numerics/complex.ts'
 import { GROUND } from '../types.ts'
 import type { Amplifier, AmplifierPart } from '../types.ts'
 import { stampAdmittance } from './admittance.ts'
-import type { ElementKind, PortContext, Stamper } from './element-kind.ts'
+import type { ElementKind, NoiseSource, PortContext, Stamper } from './element-kind.ts'
 import { toSpiceNumber } from './spice-number.ts'
 
 /*
@@ -51,6 +51,12 @@ export const amplifier: ElementKind<Amplifier> = {
       stamper.add(branch, stamper.node(e.m), 0.5)
       stamper.addSource(branch, commonModeReference(e, context))
     },
+    // −(1/A)·(v_out + rout·i)
+    loopGain: (e, stamper) => {
+      const branch = stamper.branch(e.ref)
+      stamper.add(branch, stamper.node(e.out), -1)
+      if (stamper.model === 'real') stamper.add(branch, branch, -e.part.rout)
+    },
   },
   value: () => null,
   conductance: () => null,
@@ -66,11 +72,52 @@ export const amplifier: ElementKind<Amplifier> = {
       stamper.addSource(branch, 1, 1)
       stampInputs(e, stamper)
     },
-    gain: (e, omega) => divideComplex(complex(1), complex(1 / e.part.a0, omega / (2 * Math.PI * e.part.gbw))),
+    gain: (e, omega, poles) => {
+      const first = divideComplex(complex(1), complex(1 / e.part.a0, omega / (2 * Math.PI * e.part.gbw)))
+      const second = poles === 2 ? secondPole(e.part) : Infinity
+      return divideComplex(first, complex(1, omega / (2 * Math.PI * second)))
+    },
     inputs: (e) => ({ p: e.p, m: e.m }),
+  },
+  noise: (e) => {
+    const { en, enCorner, in: current, inCorner } = e.part
+    const voltage: NoiseSource = {
+      name: 'en',
+      density: en ** 2,
+      corner: enCorner,
+      inject: (stamper) => stamper.addSource(stamper.branch(e.ref), -1),
+    }
+    const into = (name: string, node: string): NoiseSource => ({
+      name,
+      density: current ** 2,
+      corner: inCorner,
+      inject: (stamper) => stamper.addSource(stamper.node(node), -1),
+    })
+    // the − input of an integrated part's half is inside it: nothing enters there that its figures do not count
+    const inputs = e.macro ? [into('in+', e.p)] : [into('in+', e.p), into('in-', e.m)]
+    return [voltage, ...inputs].filter((source) => source.density > 0)
   },
   toSpice,
   symbol: 'amplifier',
+}
+
+/**
+ * Frequency of the second pole, Hz, with which the bare amplifier has its stated phase margin φ where its own gain is
+ * one, fu. With δ short of a right angle by the first pole there:
+ *
+ *   |A(fu)| = a0·sin δ·sin(φ − δ) = 1,   fu = gbw/(a0·tan δ),   f2 = fu·tan(φ − δ)
+ *
+ * For a large a0 that is fu = gbw·sin φ, f2 = fu·tan φ. A margin smaller than two poles can leave at this a0 gives two
+ * equal ones, which leave the least.
+ */
+export function secondPole({ a0, gbw, phaseMargin }: AmplifierPart): number {
+  const margin = (phaseMargin * Math.PI) / 180
+  let short = 0
+  for (let turn = 0; turn < 50; turn++) {
+    const sine = 1 / (a0 * Math.sin(margin - short))
+    short = Math.min(Math.asin(Math.min(sine, 1)), margin / 2)
+  }
+  return (gbw / (a0 * Math.tan(short))) * Math.tan(margin - short)
 }
 
 /** Common mode at which Vos is given, V: as stated, the part's own, or mid-rail. */

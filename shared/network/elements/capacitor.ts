@@ -18,6 +18,7 @@ export const capacitor: ElementKind<Capacitor> = {
   },
   check: (e) => (e.value > 0 ? null : messageFor(e.ref, e.value)),
   loop: null,
+  noise: () => [],
   toSpice: (e) => [`${e.ref} ${e.a} ${e.b} ${toSpiceNumber(e.value)}`],
   symbol: 'capacitor',
 }

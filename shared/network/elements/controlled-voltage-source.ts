@@ -28,6 +28,7 @@ export const controlledVoltageSource: ElementKind<ControlledVoltageSource> = {
   },
   check: () => null,
   loop: null,
+  noise: () => [],
   toSpice: (e) => [`${e.ref} ${e.p} ${e.n} ${e.cp} ${e.cn} ${toSpiceNumber(e.gain)}`],
   symbol: 'controlled-source',
 }

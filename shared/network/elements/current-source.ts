@@ -26,6 +26,7 @@ export const currentSource: ElementKind<CurrentSource> = {
   },
   check: () => null,
   loop: null,
+  noise: () => [],
   toSpice: (e) => {
     const ac = e.ac ? ` AC ${toSpiceNumber(e.ac)}` : ''
     return [`${e.ref} ${e.from} ${e.to} DC ${toSpiceNumber(e.value)}${ac}`]

@@ -13,10 +13,18 @@ export interface Stamper {
   addSource(row: number, dc: number, ac?: number): void
 }
 
-/** A place at which a deviation enters: an element's value, or an error source of an amplifier. */
-export type PortName = 'value' | 'vos' | 'ib+' | 'ib-' | 'cmrr'
+/** A place at which a deviation enters: an element's value, or an error source of an amplifier. `loopGain`: change of
+ * 1/a0. */
+export type PortName = 'value' | 'vos' | 'ib+' | 'ib-' | 'cmrr' | 'loopGain'
 
-export const portNames = ['value', 'vos', 'ib+', 'ib-', 'cmrr'] as const satisfies readonly PortName[]
+export const portNames = [
+  'value',
+  'vos',
+  'ib+',
+  'ib-',
+  'cmrr',
+  'loopGain',
+] as const satisfies readonly PortName[]
 
 /** What a port may need to know: the given common mode of reference, or voltages to derive it from. */
 export interface PortContext {
@@ -27,6 +35,18 @@ export interface PortContext {
 /** Stamps the derivative of the equations with respect to the port's amount. */
 export type PortStamp<E> = (element: E, stamper: Stamper, context: PortContext) => void
 
+/** One independent source of noise inside an element. */
+export interface NoiseSource {
+  /** `thermal`, `en`, `in+`, `in-`: unique in its element. */
+  name: string
+  /** Density without flicker, V²/Hz or A²/Hz. */
+  density: number
+  /** Frequency below which 1/f exceeds that, Hz; 0 for none. The whole is density·(1 + corner/f). */
+  corner: number
+  /** Stamps the source with an amplitude of 1 V or 1 A. */
+  inject(stamper: Stamper): void
+}
+
 /** Symbols that the drawing knows. */
 export type SymbolName =
   'resistor' | 'capacitor' | 'voltage-source' | 'current-source' | 'controlled-source' | 'amplifier'
@@ -35,8 +55,9 @@ export type SymbolName =
 export interface LoopOpening<E> {
   /** Stamps the element with its controlled source replaced by an independent source of 1 V. */
   stamp(element: E, stamper: Stamper): void
-  /** Controlled source per volt between the inputs at s = j·omega. */
-  gain(element: E, omega: number): Complex
+  /** Controlled source per volt between the inputs at s = j·omega. With one pole as in every analysis; with two the
+   * second is the one that the part's phase margin implies. */
+  gain(element: E, omega: number, poles: 1 | 2): Complex
   inputs(element: E): { p: string; m: string }
 }
 
@@ -61,6 +82,8 @@ export interface ElementKind<E> {
   /** Message about a figure that is not acceptable; null if all are. */
   check(element: E): string | null
   loop: LoopOpening<E> | null
+  /** Independent sources of noise at an absolute temperature, K. */
+  noise(element: E, temperature: number): NoiseSource[]
   /** Lines of SPICE text, of the same nominal model. */
   toSpice(element: E): string[]
   symbol: SymbolName

@@ -18,9 +18,26 @@ export const resistor: ElementKind<Resistor> = {
   },
   check: (e) => (e.value > 0 ? null : messageFor(e.ref, e.value)),
   loop: null,
+  noise: (e, temperature) =>
+    e.noiseless
+      ? []
+      : [
+          {
+            name: 'thermal',
+            density: (4 * BOLTZMANN * temperature) / e.value,
+            corner: 0,
+            inject: (stamper) => {
+              stamper.addSource(stamper.node(e.a), 1)
+              stamper.addSource(stamper.node(e.b), -1)
+            },
+          },
+        ],
   toSpice: (e) => [`${e.ref} ${e.a} ${e.b} ${toSpiceNumber(e.value)}`],
   symbol: 'resistor',
 }
+
+/** J/K, exact (SI 2019). */
+const BOLTZMANN = 1.380649e-23
 
 const messageFor = (ref: string, value: number) =>
   `${ref} is ${value} Ω; a resistor needs a finite value above 0 Ω`

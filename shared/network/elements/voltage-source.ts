@@ -23,6 +23,7 @@ export const voltageSource: ElementKind<VoltageSource> = {
   },
   check: () => null,
   loop: null,
+  noise: () => [],
   toSpice: (e) => {
     const ac = e.ac ? ` AC ${toSpiceNumber(e.ac)}` : ''
     return [`${e.ref} ${e.p} ${e.n} DC ${toSpiceNumber(e.value)}${ac}`]

@@ -1,8 +1,18 @@
 import { z } from 'zod'
-import type { Fault } from '#shared/design/plan.ts'
+import type { ErrorInput } from '#shared/budget/error-input.ts'
+import type { Distribution, Fault } from '#shared/design/plan.ts'
 import { fraction, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
-import { accuracyVariables, addLeg, alongLine, commonKeys, legResistance } from './common.ts'
+import {
+  accuracyErrors,
+  addLeg,
+  alongLine,
+  commonKeys,
+  legResistance,
+  toInputs,
+  toVariables,
+  type SensorError,
+} from './common.ts'
 import { defineSensor, type SensorContext, type SensorSource } from './define.ts'
 
 const excitationVoltage = () => numberField('Excitation voltage', 'V', { above: 0, max: 100 })
@@ -40,7 +50,10 @@ const LARGEST_RATIO = 0.9
 
 interface Excitation {
   voltage: number
+  /** Limit ± over temperature, and its two parts. */
   tolerance: number
+  initial: number
+  drift: number
   resistance: number
   /** Name of the uncertain quantity; shared with a reference where it is one. */
   variable: string
@@ -56,6 +69,8 @@ function toExcitation(sensor: Bridge, context: SensorContext): Excitation {
   return {
     voltage: shared?.voltage ?? given.voltage ?? 0,
     tolerance: given.tolerance + given.drift * context.temperatureSpan,
+    initial: given.tolerance,
+    drift: given.drift,
     resistance: given.resistance,
     variable: shared?.variable ?? 'excitation',
     ratioTolerance: given.ratioTolerance,
@@ -66,6 +81,60 @@ function toExcitation(sensor: Bridge, context: SensorContext): Excitation {
 function ratioAt(sensor: Bridge, q: number): number {
   const rated = sensor.ratedAt ?? sensor.quantity.high
   return (sensor.sensitivity * (q - sensor.zeroAt)) / (rated - sensor.zeroAt)
+}
+
+/** Errors that only a bridge has, V at its output. */
+const bridgeErrors = (sensor: Bridge, scale: number, value: number): SensorError[] => [
+  {
+    id: 'sensor.zeroBalance',
+    label: 'Zero balance of the bridge',
+    path: 'sensor.zeroBalance',
+    limit: sensor.zeroBalance,
+    unit: 'V/V',
+    behaviour: 'constant',
+    scale,
+    bound: 'sensor.zero',
+  },
+  {
+    id: 'sensor.sensitivityTolerance',
+    label: 'Sensitivity of the bridge',
+    path: 'sensor.sensitivityTolerance',
+    limit: sensor.sensitivityTolerance,
+    unit: '',
+    behaviour: 'constant',
+    scale: value,
+    bound: 'sensor.span',
+  },
+]
+
+/** An excitation of its own has tolerance and drift; a shared one only what its ratio to the shared source adds. */
+function excitationInputs(excitation: Excitation, distribution: Distribution): ErrorInput[] {
+  const input = (
+    key: 'tolerance' | 'drift' | 'ratioTolerance',
+    label: string,
+    limit: number,
+    behaviour: ErrorInput['behaviour'],
+  ): ErrorInput => ({
+    id: `excitation.${key}`,
+    label,
+    source: 'excitation',
+    path: `sensor.excitation.${key}`,
+    limit,
+    unit: '',
+    distribution,
+    behaviour,
+    group: null,
+    effects: [{ ref: 'VEXC', port: 'value', scale: 1, relative: true }],
+    onOutput: null,
+  })
+  const list =
+    excitation.variable === 'excitation'
+      ? [
+          input('tolerance', 'Excitation', excitation.initial, 'constant'),
+          input('drift', 'Excitation over temperature', excitation.drift, 'sensor-temperature'),
+        ]
+      : [input('ratioTolerance', 'Excitation against its reference', excitation.ratioTolerance, 'constant')]
+  return list.filter(({ limit }) => limit > 0)
 }
 
 /** Share of the excitation that reaches the bridge through its series resistance. */
@@ -179,16 +248,12 @@ export const bridge = defineSensor({
       high: scale * ratioAt(sensor, sensor.quantity.high),
     }
     const value = alongLine(sensor.quantity, ends, quantity)
-    const variables = accuracyVariables(
-      {
-        ...sensor.accuracy,
-        span: sensor.accuracy.span + sensor.sensitivityTolerance,
-        zero: sensor.accuracy.zero + (sensor.zeroBalance * scale) / Math.abs(ends.high - ends.low),
-      },
-      // The sensitivity tolerance pivots at zero output, so travel is counted from there.
-      { value, low: 0, span: ends.high - ends.low, temperatureSpan: context.temperatureSpan },
-      'VZERO',
-    )
+    // The sensitivity tolerance pivots at zero output, so travel is counted from there.
+    const errors = [
+      ...accuracyErrors(sensor.accuracy, { value, low: 0, span: ends.high - ends.low }),
+      ...bridgeErrors(sensor, scale, value),
+    ]
+    const variables = toVariables(errors, 'VZERO', context)
     variables.push({
       id: 'signal',
       nominal: 0,
@@ -208,7 +273,10 @@ export const bridge = defineSensor({
       p: series('RSOURCEP', 'zero_p', 'in_p'),
       n: series('RSOURCEN', 'sense_n', 'in_n'),
       variables,
-
+      inputs: [
+        ...toInputs(errors, 'VZERO', context.distribution),
+        ...excitationInputs(excitation, context.distribution),
+      ],
       follows: excitation.variable === 'excitation' ? [] : [{ variable: excitation.variable, ref: 'VEXC' }],
       signal: { variable: 'signal', ref: 'VZERO' },
     }

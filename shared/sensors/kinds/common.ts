@@ -1,6 +1,8 @@
 import { z } from 'zod'
 import type { NetworkBuilder } from '#shared/network/builder.ts'
 import type { SourceVariable } from '#shared/analysis/extremes.ts'
+import type { ErrorInput } from '#shared/budget/error-input.ts'
+import type { Distribution } from '#shared/design/plan.ts'
 import { fraction, lineField, nonNegative, numberField, positive } from '#shared/units/fields.ts'
 
 /** The measurand: what is read, in its own unit. */
@@ -67,31 +69,97 @@ interface Accuracy {
   ageing: number
 }
 
+/** One error of a sensor, before it is known where it enters: limit, and V per unit of it. */
+export interface SensorError {
+  id: string
+  label: string
+  path: string
+  limit: number
+  unit: string
+  behaviour: ErrorInput['behaviour']
+  scale: number
+  /** Source variable of the bounds that holds it together with its relatives. */
+  bound: string
+}
+
 /**
- * Sensor errors as source variables around a nominal value [V]: zero and its drift, span and its drift (pivot at
- * quantity.low), linearity and repeatability. Limits are fractions of the output span; common practice.
+ * Errors that every sensor may have, V around a nominal `value`: zero with its drift and ageing, span with its drift
+ * (pivot at `low`), linearity and repeatability. Limits are fractions of the output span; common practice.
  */
-export function accuracyVariables(
+export function accuracyErrors(
   accuracy: Accuracy,
-  at: { value: number; low: number; span: number; temperatureSpan: number },
-  ref: string,
-): SourceVariable[] {
+  at: { value: number; low: number; span: number },
+): SensorError[] {
   const size = Math.abs(at.span)
-  const travel = Math.abs(at.value - at.low)
-  const limits: [string, number][] = [
-    ['sensor.zero', (accuracy.zero + accuracy.zeroDrift * at.temperatureSpan) * size],
-    ['sensor.span', (accuracy.span + accuracy.spanDrift * at.temperatureSpan) * travel],
-    ['sensor.linearity', accuracy.linearity * size],
-    ['sensor.repeatability', accuracy.repeatability * size],
+  const travel = at.value - at.low
+  const error = (
+    key: keyof Accuracy,
+    label: string,
+    behaviour: SensorError['behaviour'],
+    scale: number,
+    bound: string,
+  ): SensorError => ({
+    id: `sensor.${key}`,
+    label: `Sensor ${label}`,
+    path: `sensor.accuracy.${key}`,
+    limit: accuracy[key],
+    unit: '',
+    behaviour,
+    scale,
+    bound,
+  })
+  return [
+    error('zero', 'zero', 'constant', size, 'sensor.zero'),
+    error('zeroDrift', 'zero over temperature', 'sensor-temperature', size, 'sensor.zero'),
+    error('ageing', 'ageing', 'ageing', size, 'sensor.zero'),
+    error('span', 'span', 'constant', travel, 'sensor.span'),
+    error('spanDrift', 'span over temperature', 'sensor-temperature', travel, 'sensor.span'),
+    error('linearity', 'linearity', 'resolution', size, 'sensor.linearity'),
+    error('repeatability', 'repeatability', 'resolution', size, 'sensor.repeatability'),
   ]
-  return limits
+}
+
+/** The errors as inputs at a source, for budget and Monte Carlo. */
+export const toInputs = (
+  errors: readonly SensorError[],
+  ref: string,
+  distribution: Distribution,
+): ErrorInput[] =>
+  errors
+    .filter(({ limit }) => limit > 0)
+    .map(({ id, label, path, limit, unit, behaviour, scale }) => ({
+      id,
+      label,
+      source: 'sensor',
+      path,
+      limit,
+      unit,
+      distribution,
+      behaviour,
+      group: null,
+      effects: [{ ref, port: 'value', scale, relative: false }],
+      onOutput: null,
+    }))
+
+/** The same as variables of the bounds: limits over temperature and time, those of one `bound` together. */
+export function toVariables(
+  errors: readonly SensorError[],
+  ref: string,
+  { temperatureSpan, years }: { temperatureSpan: number; years: number },
+): SourceVariable[] {
+  const most = (behaviour: SensorError['behaviour']) =>
+    behaviour === 'sensor-temperature' ? temperatureSpan : behaviour === 'ageing' ? years : 1
+  const limits = new Map<string, number>()
+  for (const { bound, limit, scale, behaviour } of errors)
+    limits.set(bound, (limits.get(bound) ?? 0) + limit * Math.abs(scale) * most(behaviour))
+  return [...limits]
     .filter(([, limit]) => limit > 0)
     .map(([id, limit]) => ({
       id,
       nominal: 0,
       low: -limit,
       high: limit,
-      injections: [{ ref, port: 'value' as const, scale: 1 }],
+      injections: [{ ref, port: 'value', scale: 1 }],
     }))
 }
 

@@ -1,7 +1,8 @@
 import type { z } from 'zod'
-import type { Ends, Fault, Reason } from '#shared/design/plan.ts'
+import type { Distribution, Ends, Fault, Reason } from '#shared/design/plan.ts'
 import type { NetworkBuilder } from '#shared/network/builder.ts'
 import type { SourceVariable } from '#shared/analysis/extremes.ts'
+import type { ErrorInput } from '#shared/budget/error-input.ts'
 
 /** What the rest of the design offers a sensor. Voltages in V, temperatures in °C. */
 export interface SensorContext {
@@ -9,6 +10,10 @@ export interface SensorContext {
   shared: Record<'converter' | 'shift' | 'positive', { voltage: number; variable: string } | null>
   /** Largest excursion of the sensor's temperature from 25 °C, K. */
   temperatureSpan: number
+  /** Calibration interval, over which the sensor ages, years. */
+  years: number
+  /** Distribution of a limit that does not say its own. */
+  distribution: Distribution
 }
 
 /** The electrical signal that a sensor gives. */
@@ -34,6 +39,8 @@ export interface SensorSource {
   p: string
   n: string | null
   variables: SourceVariable[]
+  /** The sensor's own errors, each by itself; `variables` holds their limits over temperature and time. */
+  inputs: ErrorInput[]
   /** Sources of the sensor that follow a shared reference volt for volt. */
   follows: { variable: string; ref: string }[]
   /** The source whose value moves the signal volt for volt; clip points are searched along it. */

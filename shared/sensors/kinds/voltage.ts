@@ -1,6 +1,15 @@
 import { z } from 'zod'
 import type { Fault } from '#shared/design/plan.ts'
-import { accuracyVariables, addLeg, alongLine, commonKeys, legResistance, voltsRange } from './common.ts'
+import {
+  accuracyErrors,
+  addLeg,
+  alongLine,
+  commonKeys,
+  legResistance,
+  toInputs,
+  toVariables,
+  voltsRange,
+} from './common.ts'
 import { defineSensor, type SensorSource } from './define.ts'
 
 const schema = z.strictObject({
@@ -97,16 +106,10 @@ export const voltage = defineSensor({
   source(sensor, context, builder, quantity): SensorSource {
     const value = alongLine(sensor.quantity, sensor.output, quantity)
     const series = (ref: string, from: string, to: string) => addLeg(builder, sensor, ref, from, to)
-    const variables = accuracyVariables(
-      sensor.accuracy,
-      {
-        value,
-        low: sensor.output.low,
-        span: sensor.output.high - sensor.output.low,
-        temperatureSpan: context.temperatureSpan,
-      },
-      'VSENSE',
-    )
+    const { low, high } = sensor.output
+    const errors = accuracyErrors(sensor.accuracy, { value, low, span: high - low })
+    const inputs = toInputs(errors, 'VSENSE', context.distribution)
+    const variables = toVariables(errors, 'VSENSE', context)
     variables.push({
       id: 'signal',
       nominal: value,
@@ -117,7 +120,7 @@ export const voltage = defineSensor({
     const signal = { variable: 'signal', ref: 'VSENSE' }
     if (sensor.wiring === 'single-ended') {
       builder.voltageSource({ ref: 'VSENSE', p: 'sense', n: '0', value, ac: 1, stage: 'source' })
-      return { p: series('RSOURCE', 'sense', 'in'), n: null, variables, follows: [], signal }
+      return { p: series('RSOURCE', 'sense', 'in'), n: null, variables, inputs, follows: [], signal }
     }
     const range = sensor.commonMode ?? { low: 0, high: 0 }
     const middle = (range.low + range.high) / 2
@@ -138,7 +141,7 @@ export const voltage = defineSensor({
       p: series('RSOURCEP', 'sense_p', 'in_p'),
       n: series('RSOURCEN', 'sense_n', 'in_n'),
       variables,
-
+      inputs,
       follows: [],
       signal,
     }

@@ -107,18 +107,16 @@ describe('other words of a row', () => {
     expect(openWords([])).toBe('Not complete yet')
   })
 
-  it('gives the worst end error in the measurand’s unit, rounded up, against the target', () => {
-    const chosen = chosenOf(plan)
-    const worst = chosen?.tolerance?.worst
-    if (!worst) throw new Error('the example has no tolerance')
-    const volts = Math.abs(plan.required.target.high - plan.required.target.low)
-    const expected = (Math.max(Math.abs(worst.low), Math.abs(worst.high)) / volts) * 5
+  it('gives the expanded uncertainty in the measurand’s unit, rounded up, against the target', () => {
+    const budget = chosenOf(plan)?.budget
+    if (!budget) throw new Error('the example has no budget')
+    const expected = budget.totals[budget.target?.state ?? 'asBuilt'].expanded / budget.perQuantity
     const words = errorWords(plan, document)
     expect(words.error).toBeCloseTo(expected, 12)
     expect(Number.parseFloat(words.text)).toBeGreaterThanOrEqual(expected - 1e-12)
     const withTarget = errorWords(plan, { ...document, target: { limit: 0.01 } })
     expect(withTarget.target).toBeCloseTo(0.05, 12)
-    expect(spaces(withTarget.text)).toMatch(/^\d\d of 50 mm\/s$/)
+    expect(spaces(withTarget.text)).toMatch(/^\d+(\.\d+)? of 50 mm\/s$/)
     expect(errorWords(null, { ...document, target: { limit: 0.5, per: 'quantity' } }).text).toMatch(/^target/)
     expect(errorWords(null, {}).text).toBe('not known')
   })

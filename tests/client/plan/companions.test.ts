@@ -29,6 +29,38 @@ describe('keys that go together', () => {
     expect(getAt(set(cornered, 'choose.filter.kind', undefined), 'choose')).toBeUndefined()
   })
 
+  it('an order or a response asks for sections, and goes with them', () => {
+    const sections = set(set(example, 'choose.filter.order', 4), 'choose.filter.response', 'bessel')
+    expect(getAt(sections, 'choose.filter')).toEqual({ kind: 'sallen-key', order: 4, response: 'bessel' })
+    expect(readDesign(sections).ok).toBe(true)
+    expect(getAt(set(sections, 'choose.filter.kind', 'rc'), 'choose.filter')).toEqual({ kind: 'rc' })
+    expect(getAt(set(sections, 'choose.filter.kind', 'multiple-feedback'), 'choose.filter.order')).toBe(4)
+    expect(appliesTo('choose.filter.order', example)).toBe(false)
+    expect(appliesTo('choose.filter.order', set(example, 'choose.filter.kind', 'multiple-feedback'))).toBe(
+      true,
+    )
+  })
+
+  it('a modulator and its digital filter belong to an oversampling converter', () => {
+    const fast = set(set(example, 'converter.architecture', 'oversampling'), 'converter.modulatorRate', 1e6)
+    expect(appliesTo('converter.digitalFilter', fast)).toBe(true)
+    expect(appliesTo('converter.digitalFilter', example)).toBe(false)
+    expect(getAt(set(fast, 'converter.architecture', 'sar'), 'converter.modulatorRate')).toBeUndefined()
+  })
+
+  it('a multiplexer without channels is none', () => {
+    const many = set(
+      set(example, 'converter.multiplexed.channels', 4),
+      'converter.multiplexed.resistance',
+      100,
+    )
+    expect(readDesign(many).ok).toBe(true)
+    expect(getAt(set(many, 'converter.multiplexed.channels', undefined), 'converter.multiplexed')).toBe(
+      undefined,
+    )
+    expect(appliesTo('converter.multiplexed.resistance', example)).toBe(false)
+  })
+
   it('a single-ended signal loses its common mode, and only a differential one is asked for it', () => {
     const differential = set(set(example, 'sensor.wiring', 'differential'), 'sensor.commonMode', {
       low: 2,

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { keepVisitorWork, readVisitorWork, VISITOR_KEY } from '#client/features/plan/draft/visitor-storage.ts'
-import { compareDrafts } from '#client/features/plan/draft/compare.ts'
+import { compareDrafts } from '#shared/design/document-differences.ts'
 import type { DraftDocument } from '#client/features/plan/draft/paths.ts'
 
 function memory(first?: string) {

@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto'
 import { readFileSync } from 'node:fs'
 import { beforeAll, describe, expect, it } from 'vitest'
 import { toPrintable } from '#server/documents/glyphs.ts'
+import { studyChosen } from '#server/documents/make-note.tsx'
 import { renderNote } from '#server/documents/render-note.ts'
 import { planDesign } from '#shared/design/plan-design.ts'
 import type { DesignDocument } from '#shared/design/schema.ts'
@@ -15,7 +16,7 @@ const readExample = (name: string): DesignDocument =>
   JSON.parse(readFileSync(`docs/examples/${name}.json`, 'utf8')) as DesignDocument
 
 /** Keys of a note that say how, not what. */
-const silent = new Set(['id', 'type', 'align', 'levels', 'state'])
+const silent = new Set(['id', 'type', 'align', 'levels', 'state', 'draws'])
 
 /** Every text of a note; lines of code by their words, since a long one is set on. */
 function textsOf(value: unknown): string[] {
@@ -29,7 +30,7 @@ function textsOf(value: unknown): string[] {
 
 /** All texts on the sheets; titles of groups stand in the outline only. */
 function printable(input: NoteInput): string[] {
-  const { head, foot, first, groups } = buildNote(input)
+  const { head, foot, first, groups } = buildNote({ ...input, spread: studyChosen(input).spread })
   return textsOf([head, foot, first, groups.map(({ sections }) => sections)])
 }
 

@@ -1,5 +1,3 @@
-import type { BigNumber } from 'mathjs'
-import { all, create } from 'mathjs'
 import { describe, expect, it } from 'vitest'
 import { solveDc } from '#shared/analysis/dc.ts'
 import { assembleSystem } from '#shared/analysis/system.ts'
@@ -8,20 +6,7 @@ import type { Network } from '#shared/network/types.ts'
 import { buildAmplifierPart } from '#tests/support/amplifier-part.ts'
 import { Bench, sampleNetworks } from '#tests/support/circuits.ts'
 import { expectClose } from '#tests/support/expect-close.ts'
-
-const math = create(all!, { number: 'BigNumber', precision: 64, relTol: 1e-60, absTol: 1e-60 })
-
-/** The same stamps solved with 64 digits by another program. */
-function solveExactly(network: Network, model: 'ideal' | 'real'): number[] {
-  const { constant, dc, index } = assembleSystem(network, { model })
-  const exact = (value: number) => math.bignumber(value.toPrecision(60))
-  const rows = index.nodes
-    .concat(index.branches)
-    .map((_, i) => Array.from({ length: index.size }, (_, j) => exact(constant[i * index.size + j]!)))
-  // the declared type leaves open what a list of lists of such numbers comes back as
-  const solution = math.lusolve(rows, Array.from(dc, exact)) as unknown as (BigNumber | number)[][]
-  return solution.map(([value]) => Number(value))
-}
+import { solveExactly } from '#tests/support/solve-exactly.ts'
 
 describe.each(Object.entries(sampleNetworks()))('operating point of %s', (_, network) => {
   it.each(['ideal', 'real'] as const)('agrees with 64 digits to 1e-11 V, %s amplifiers', (model) => {

@@ -149,8 +149,11 @@ describe.each(chosen)('extremes of %s', (title) => {
         )
         request.outputs.forEach(({ id }, o) => {
           const entry = found.outputs[id]![held.id]!
-          expectClose(entry.low, low[o]!, { absolute: 1e-12 })
-          expectClose(entry.high, high[o]!, { absolute: 1e-12 })
+          // never narrower, and wider only by what resistors of slight effect are allowed for
+          expect(entry.low).toBeLessThanOrEqual(low[o]! + 1e-12)
+          expect(entry.high).toBeGreaterThanOrEqual(high[o]! - 1e-12)
+          expectClose(entry.low, low[o]!, { absolute: 2e-9 })
+          expectClose(entry.high, high[o]!, { absolute: 2e-9 })
           expectClose(entry.nominal, nominal[o]!, { absolute: 1e-12 })
         })
       }

@@ -7,6 +7,7 @@ import {
   computeSensitivities,
   findSensitivity,
 } from '#shared/analysis/sensitivity.ts'
+import type { PortName } from '#shared/network/elements/element-kind.ts'
 import { kindOf } from '#shared/network/elements/index.ts'
 import type { Network } from '#shared/network/types.ts'
 import { magnitude, subtractComplex } from '#shared/numerics/complex.ts'
@@ -38,14 +39,16 @@ const sizeOf = (network: Network, ref: string): number => {
   return Math.abs(kindOf(element).value(element) ?? 0)
 }
 
+/** Small enough for the first order: 1e-6 A, and of 1/a0 what leaves a loop gain of some thousands. */
+const steps: Partial<Record<PortName, number>> = { 'ib+': 1e-6, 'ib-': 1e-6, loopGain: 1e-6 }
+
 describe('sensitivities at DC', () => {
   it.each(['ideal', 'real'] as const)('equal central differences at every port, %s amplifiers', (model) => {
     fc.assert(
       fc.property(anyNetwork, (network) => {
         const references = Object.fromEntries(network.elements.map(({ ref }) => [ref, 0.4]))
         for (const { ref, port, derivative } of computeSensitivities(network, { model, references })) {
-          const step =
-            port === 'value' ? 1e-4 * (sizeOf(network, ref) || 1) : port.startsWith('ib') ? 1e-6 : 1e-4
+          const step = port === 'value' ? 1e-4 * (sizeOf(network, ref) || 1) : (steps[port] ?? 1e-4)
           const at = (amount: number) =>
             solveDc(network, { model, extra: [{ ref, port, amount, reference: 0.4 }] }).output
           const difference = (at(step) - at(-step)) / (2 * step)

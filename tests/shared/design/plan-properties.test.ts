@@ -40,14 +40,21 @@ const reread = <T>(value: T): T => JSON.parse(JSON.stringify(value)) as T
 
 /** Paths at which a plan holds something that is no figure, no text and no branch, or a figure of too many digits. */
 function oddValues(plan: Plan): string[] {
-  const mayBeNull =
-    /(^chosen|clipsAt\.(low|high)|ClipsAt\.(low|high)|\.group|\.gain|Bandwidth(Lsb)?|AtHalfSampleRate|atHalfSampleRate|holdsTo|clampLimit|clampCurrent|\.path)$/
+  const mayBeNull = [
+    /(^chosen|clipsAt\.(low|high)|ClipsAt\.(low|high)|\.group|\.gain|Bandwidth(Lsb)?|AtHalfSampleRate|atHalfSampleRate|holdsTo|clampLimit|clampCurrent|\.path)$/,
+    /\.stability\.\d+\.(crossover|phaseMargin|worst)$/,
+    /\.budget\.(target|improvements\.\d+\.(needed|part))$/,
+    /\.dynamics\.(bandwidth|settling|fullPower|overshoot)$/,
+    /\.drive\.(needed|available|average|settled|largestSource|multiplexed|multiplexed\.(needed|met)|criteria\.\d+\.(needed|met))$/,
+    /\.filter\.(alias|floor|digital|mains|alias\.rateFor|alias\.orders\.\w+|band\.(droop|reached)|digital\.droop)$/,
+    /\.filter\.sections\.\d+\.(real|(wanted|values|real)\.q)$/,
+  ]
   return valuesOf(plan).flatMap(([path, value]) => {
     if (typeof value === 'number') {
       if (!Number.isFinite(value)) return [`${path} is ${value}`]
       return Number(value.toPrecision(12)) === value ? [] : [`${path} has too many digits: ${value}`]
     }
-    if (value === null) return mayBeNull.test(path) ? [] : [`${path} is null`]
+    if (value === null) return mayBeNull.some((known) => known.test(path)) ? [] : [`${path} is null`]
     return value === undefined ? [`${path} is undefined`] : []
   })
 }

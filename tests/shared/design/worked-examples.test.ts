@@ -130,7 +130,7 @@ describe('gain and offset of single-supply stages', () => {
       const { gain, offset } = lineOf(circuit)
       expectPublished(entry, 'm', gain)
       expectPublished(entry, 'b_V', offset)
-      const { wanted } = build(circuit).trial.stages[0]!.sized
+      const wanted = build(circuit).trial.stages[0]!.sized.wanted()
       expectPublished(entry, 'R2_ideal_ohm', wanted.R2 ?? NaN)
       expectPublished(entry, 'RF_ideal_ohm', wanted.Rf ?? NaN)
     },
@@ -195,7 +195,7 @@ describe('gain and offset of single-supply stages', () => {
     const { gain, offset } = lineOf(circuit)
     expectPublished(entry, 'm', gain)
     expectPublished(entry, 'b_V', offset)
-    const { wanted } = build(circuit).trial.stages[0]!.sized
+    const wanted = build(circuit).trial.stages[0]!.sized.wanted()
     expectPublished(entry, 'RF_ideal_ohm', wanted.Rf ?? NaN)
     expectPublished(entry, 'R2_ideal_ohm', wanted.R1 ?? NaN)
   })
@@ -218,7 +218,7 @@ describe('gain and offset of single-supply stages', () => {
     expectPublished(entry, 'm', gain)
     expectPublished(entry, 'b_V', offset)
     expectPublished(entry, 'vout_V', ...ends)
-    const { wanted } = build(circuit).trial.stages[0]!.sized
+    const wanted = build(circuit).trial.stages[0]!.sized.wanted()
     expectPublished(entry, 'RF_ohm', wanted.Rf ?? NaN)
     expectPublished(entry, 'RG2_ohm', wanted.Rs ?? NaN)
   })
@@ -406,12 +406,12 @@ describe('difference and instrumentation amplifiers', () => {
       })
       expectPublished(entry, 'gain', gain)
       const target = one(entry.given, 'G_target')
-      const { wanted } = build({
+      const wanted = build({
         ...circuit,
         signal: [-0.1, 0.1],
         output: [-0.1 * target, 0.1 * target],
         values: {},
-      }).trial.stages[0]!.sized
+      }).trial.stages[0]!.sized.wanted()
       expectPublished(entry, 'Rg_for_G10_ohm', wanted.Rg ?? NaN)
     },
   )

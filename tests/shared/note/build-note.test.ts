@@ -8,9 +8,11 @@ import {
   buildStressPlan,
   infeasiblePlan,
   resistor,
+  sampleBudget,
   sampleCandidate,
   sampleContext,
   sampleDocument,
+  sampleLine,
   samplePlan,
 } from './sample.ts'
 
@@ -47,7 +49,7 @@ describe('answers of the first sheet', () => {
   })
 
   it('turns the worst-case error at the converter into the measurand, rounded up', () => {
-    // 3.87 mV of tolerances and 0.5 mV of the nominal end over (2.4505 − 0.0501) V / 5 m/s = 9.1026 mm/s.
+    // 3.87 mV of the budget and 0.5 mV of the nominal end over (2.4505 − 0.0501) V / 5 m/s = 9.1026 mm/s.
     expect(plain(error?.figure)).toBe('±9.2 mm/s')
     expect(plain(error?.small[0])).toContain('miss the end points by 1.1 mm/s')
   })
@@ -203,7 +205,8 @@ describe('later sheets', () => {
       'model',
       'loads',
       'over-voltage',
-      'tolerance',
+      'errors',
+      'filter',
       'transfer',
       'assumptions',
       'cautions',
@@ -215,10 +218,10 @@ describe('later sheets', () => {
   })
 
   it('leaves out what the plan has not computed', () => {
-    const { tolerance: _, model: __, loads: ___, ...candidate } = sampleCandidate
+    const { budget: _, model: __, loads: ___, ...candidate } = sampleCandidate
     const plan = { ...samplePlan, candidates: [candidate] }
     const note = buildNote({ document: sampleDocument, plan, context: sampleContext })
-    expect(section(note, 'tolerance')).toBeUndefined()
+    expect(section(note, 'errors')).toBeUndefined()
     expect(section(note, 'model')).toBeUndefined()
     expect(section(note, 'loads')).toBeUndefined()
   })
@@ -243,27 +246,26 @@ describe('later sheets', () => {
     expect(JSON.stringify(section(note, 'equations'))).toContain('1 + R1B/R99')
   })
 
-  it('sums the smallest tolerance lines so that the table adds up to the worst case', () => {
-    const lines = Array.from({ length: 30 }, (_, i) => ({
-      id: `R${i}.initial`,
-      label: `R${i}`,
-      source: `R${i}`,
-      limit: 1e-3,
-      unit: '',
-      low: 1e-4,
-      high: -1e-4,
-    }))
-    const tolerance = { lines, worst: { low: 3e-3, high: 3e-3 }, rss: { low: 5.5e-4, high: 5.5e-4 } }
-    const plan = { ...samplePlan, candidates: [{ ...sampleCandidate, tolerance }] }
+  it('sums the smallest lines of the budget so that the table adds up to the worst case', () => {
+    const budget = sampleBudget(
+      Array.from({ length: 30 }, (_, i) =>
+        sampleLine(`R${i}.initial`, `R${i}`, `R${i}`, {
+          limit: 1e-3,
+          unit: '',
+          asBuilt: 1e-3,
+          share: 1 / 30,
+        }),
+      ),
+    )
+    const plan = { ...samplePlan, candidates: [{ ...sampleCandidate, budget }] }
     const note = buildNote({ document: sampleDocument, plan, context: sampleContext })
     const rows = tables(note).find((table) => table.columns[0]?.title === 'What varies')?.rows ?? []
-    const number = (text: string | undefined) => Number(/[\d.]+/.exec(text ?? '')?.[0])
-    const parts = rows.filter((row) => !/^(Worst|Root)/.test(row.cells[0] ?? ''))
-    const worst = rows.find((row) => row.cells[0]?.startsWith('Worst'))
-    const sum = parts.reduce((total, row) => total + number(row.cells[2]), 0)
-    // Every figure is rounded up at the last place printed, 0.01 mm/s.
-    expect(sum).toBeGreaterThanOrEqual(number(worst?.cells[2]) - 0.01)
-    expect(sum).toBeLessThan(number(worst?.cells[2]) + 0.01 * rows.length)
+    expect(rows.at(-1)?.cells[0]).toBe('All others, 14 lines')
+    // In codes, every figure rounded up at its second digit.
+    const sum = rows.reduce((total, row) => total + Number(/[\d.]+/.exec(row.cells[4] ?? '')?.[0]), 0)
+    const codes = budget.totals.calibrated.worst / samplePlan.lsb
+    expect(sum).toBeGreaterThanOrEqual(codes)
+    expect(sum).toBeLessThan(codes * 1.05)
   })
 })
 
@@ -328,7 +330,7 @@ describe.each(readdirSync('docs/examples').filter((file) => file.endsWith('.json
   it('calls the references by name in its tables, not by node', () => {
     expect(JSON.stringify(tables(note))).not.toMatch(/vadcref|vref/)
     const loads = plan.candidates[plan.chosen ?? 0]?.loads ?? []
-    const named = tables(note).find((table) => table.columns[0]?.title === 'Source')
+    const named = tables(note).find((table) => table.columns[1]?.title === 'Drawn from it')
     expect(named?.rows.map((row) => row.cells[0]) ?? []).toEqual(
       loads.map(({ node }) => (node === 'vadcref' ? 'Converter reference' : 'Shift reference')),
     )

@@ -1,4 +1,12 @@
-import type { Candidate, Component, Level, Plan } from '#shared/design/plan.ts'
+import type {
+  Budget,
+  BudgetLine,
+  Candidate,
+  Component,
+  ErrorState,
+  Level,
+  Plan,
+} from '#shared/design/plan.ts'
 import type { DesignDocument } from '#shared/design/schema.ts'
 import type { NoteContext } from '#shared/note/types.ts'
 
@@ -66,6 +74,58 @@ const level = (
     clipsAt: { low: clip(region[0], 0), high: clip(region[1], 0) },
     worstClipsAt: { low: clip(region[0], 0.05), high: clip(region[1], 0.05) },
     gain,
+  }
+}
+
+/** A line of the budget of which an adjustment leaves a tenth. */
+export const sampleLine = (
+  id: string,
+  label: string,
+  source: string,
+  { limit, unit, asBuilt, share }: { limit: number; unit: string; asBuilt: number; share: number },
+): BudgetLine => ({
+  id,
+  label,
+  source,
+  path: null,
+  limit,
+  unit,
+  distribution: 'rectangular',
+  sensitivity: asBuilt / limit,
+  standard: asBuilt / 10 / Math.sqrt(3),
+  calibrates: 'span',
+  group: null,
+  asBuilt,
+  zeroed: asBuilt / 2,
+  calibrated: asBuilt / 10,
+  share,
+})
+
+/** Lines with totals that add up. */
+export function sampleBudget(lines: BudgetLine[]): Budget {
+  const total = (state: ErrorState) => {
+    const left = lines.map((line) => line[state])
+    const standard = Math.hypot(...left) / Math.sqrt(3)
+    return {
+      worst: left.reduce((sum, value) => sum + value, 0),
+      rss: Math.hypot(...left),
+      expanded: 1.8 * standard,
+      standard,
+      k: 1.8,
+      coverageBy: 'quantile' as const,
+      at: 2.5,
+      temperature: 45,
+    }
+  }
+  return {
+    lines,
+    totals: { asBuilt: total('asBuilt'), zeroed: total('zeroed'), calibrated: total('calibrated') },
+    coverage: 0.95,
+    points: [-2.5, 2.5],
+    perQuantity: 0.48008,
+    target: null,
+    improvements: [],
+    zeroingHurts: false,
   }
 }
 
@@ -221,38 +281,27 @@ export const sampleCandidate: Candidate = {
     },
   ],
   loads: [{ node: 'vref', source: 8.1e-5, sink: 0, allowed: { source: 0.01, sink: 0 }, state: 'clear' }],
-  tolerance: {
-    lines: [
-      {
-        id: 'Rf.initial',
-        label: 'Rf, initial tolerance',
-        source: 'Rf',
-        limit: 0.001,
-        unit: '',
-        low: -0.0012,
-        high: 0.0031,
-      },
-      {
-        id: 'U1.vos',
-        label: 'U1, offset voltage',
-        source: 'U1',
-        limit: 2e-4,
-        unit: 'V',
-        low: 0.00077,
-        high: 0.00077,
-      },
-    ],
-    worst: { low: 0.00197, high: 0.00387 },
-    rss: { low: 0.00143, high: 0.0032 },
-  },
+  budget: sampleBudget([
+    sampleLine('Rf.initial', 'Rf tolerance', 'Rf', { limit: 0.001, unit: '', asBuilt: 0.0031, share: 0.9 }),
+    sampleLine('U1.vos', 'U1 offset voltage', 'U1', { limit: 2e-4, unit: 'V', asBuilt: 0.00077, share: 0.1 }),
+  ]),
   filter: {
     kind: 'rc',
+    response: 'butterworth',
+    normalisation: 'the corner is where the response is 3 dB down',
+    order: 1,
+    wantedCorner: 1000,
+    corner: 1007,
+    sections: [],
     resistance: 1580,
     capacitance: 1e-7,
-    corner: 1007,
     droopAtBandwidth: 0.0004,
+    alias: null,
     atHalfSampleRate: null,
-    settling: 0.00165,
+    floor: null,
+    band: { corner: { low: 950, high: 1070 }, droop: null, reached: null },
+    digital: null,
+    mains: null,
   },
   equations: [
     {
@@ -379,18 +428,16 @@ export function buildStressPlan(): Plan {
           ...sampleCandidate.model![0]!,
           amplifier: `U${i + 1}`,
         })),
-        tolerance: {
-          ...sampleCandidate.tolerance!,
-          lines: Array.from({ length: 40 }, (_, i) => ({
-            id: `R${i}.initial`,
-            label: `R${i}, initial tolerance and change over the whole range of temperature`,
-            source: `R${i}`,
-            limit: 1e-3,
-            unit: '',
-            low: 1e-4 * i,
-            high: -2e-4 * i,
-          })),
-        },
+        budget: sampleBudget(
+          Array.from({ length: 40 }, (_, i) =>
+            sampleLine(
+              `R${i}.initial`,
+              `R${i}, initial tolerance and change over the whole range of temperature`,
+              `R${i}`,
+              { limit: 1e-3, unit: '', asBuilt: 2e-4 * (i + 1), share: (i + 1) / 820 },
+            ),
+          ),
+        ),
         netlist: Array.from(
           { length: 140 },
           (_, i) =>

@@ -3,6 +3,8 @@ import type { Arrangement, Need, Sizing } from '#shared/amplifiers/define.ts'
 import { arrangements } from '#shared/amplifiers/index.ts'
 import { StageBuilder } from '#shared/amplifiers/stage-builder.ts'
 import { designSchema } from '#shared/design/schema.ts'
+import { addFilter } from '#shared/filters/build-filter.ts'
+import { sizeFilter } from '#shared/filters/size-filter.ts'
 import { NetworkBuilder } from '#shared/network/builder.ts'
 import type { Network } from '#shared/network/types.ts'
 import { sensorContext } from '#shared/design/chain.ts'
@@ -25,6 +27,8 @@ export interface SampleOptions {
   source: keyof typeof designs
   sourceResistance?: number
   filter?: boolean
+  /** Filter sections with amplifiers, behind the stages. */
+  sections?: { kind: 'sallen-key' | 'multiple-feedback'; order: number }
   referenceResistance?: number
   /** Designators left open. */
   open?: string[]
@@ -101,7 +105,11 @@ export function sampleNetwork(arrangement: Arrangement, options: SampleOptions):
     kind.build(stage, valuesFor(kind, options.open ?? []), sizing, need)
     at = { p: out, n: null }
   })
-  if (options.filter !== false) {
+  if (options.sections) {
+    const choose = { ...design.choose, filter: { ...options.sections, corner: 1000 } }
+    const spec = sizeFilter({ ...design, choose }, { voltage: 2.5, resistance: 0 })
+    addFilter(builder, counter, design, spec, at.p)
+  } else if (options.filter !== false) {
     builder.resistor({ ref: 'R9', a: at.p, b: 'adc', value: 1000, stage: 'filter' })
     builder.capacitor({ ref: 'C9', a: 'adc', b: '0', value: 1e-8, stage: 'filter' })
   } else if (at.p !== 'adc') {
@@ -165,6 +173,26 @@ export function sampleNetworks(): Sample[] {
       }),
       add(`three-amplifier, then ${second.id}`, byId('three-amplifier'), { source: 'bridge', second }),
     ]),
+    ...(['sallen-key', 'multiple-feedback'] as const).flatMap((kind) =>
+      [2, 3, 4, 6].flatMap((order) => [
+        add(`direct, ${kind} of order ${order}`, byId('direct'), {
+          source: 'voltage',
+          sections: { kind, order },
+        }),
+        add(`non-inverting-up, ${kind} of order ${order}`, byId('non-inverting-up'), {
+          source: 'voltage',
+          sections: { kind, order },
+        }),
+        add(`inverting-up, ${kind} of order ${order}`, byId('inverting-up'), {
+          source: 'voltage',
+          sections: { kind, order },
+        }),
+        add(`three-amplifier, ${kind} of order ${order}`, byId('three-amplifier'), {
+          source: 'bridge',
+          sections: { kind, order },
+        }),
+      ]),
+    ),
     ...differentials.map((a) =>
       add(`${a.id}, then inverting-up`, a, { source: 'bridge', second: byId('inverting-up') }),
     ),

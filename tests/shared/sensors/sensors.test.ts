@@ -16,6 +16,8 @@ const context: SensorContext = {
     positive: { voltage: 5, variable: 'positiveRail' },
   },
   temperatureSpan: 35,
+  years: 1,
+  distribution: 'rectangular',
 }
 
 interface Unwrappable {

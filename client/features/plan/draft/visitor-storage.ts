@@ -53,8 +53,9 @@ const isRecord = (value: unknown): value is Record<string, unknown> =>
   typeof value === 'object' && value !== null && !Array.isArray(value)
 
 /** The sections that the steps read must be what they say they are; single values may still be wrong. */
-function isDraft(document: Record<string, unknown>): boolean {
+export function isDraft(document: unknown): document is DraftDocument {
   return (
+    isRecord(document) &&
     document.format === 'spandrel-design/1' &&
     typeof document.name === 'string' &&
     ['sensor', 'converter', 'rails', 'parts', 'choose'].every(

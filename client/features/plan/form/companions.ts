@@ -9,6 +9,13 @@ type Rule = (value: unknown, document: DraftDocument) => Change[]
 
 const drop = (path: string): Change => ({ path, value: undefined })
 
+const isSections = (kind: unknown): boolean => kind === 'sallen-key' || kind === 'multiple-feedback'
+
+const kindFor = (value: unknown, document: DraftDocument, kind: string): Change[] =>
+  value !== undefined && getAt(document, 'choose.filter.kind') === undefined
+    ? [{ path: 'choose.filter.kind', value: kind }]
+    : []
+
 const rules: Readonly<Record<string, Rule>> = {
   // A single-ended signal has no common mode.
   'sensor.wiring': (value) => (value === 'differential' ? [] : [drop('sensor.commonMode')]),
@@ -23,12 +30,24 @@ const rules: Readonly<Record<string, Rule>> = {
     getAt(document, 'converter.reference.same') === 'positive'
       ? [{ path: 'converter.reference.voltage', value }]
       : [],
-  // Without a kind there is no filter to speak of; a corner asks for one.
-  'choose.filter.corner': (value, document) =>
-    value !== undefined && getAt(document, 'choose.filter.kind') === undefined
-      ? [{ path: 'choose.filter.kind', value: 'rc' }]
-      : [],
-  'choose.filter.kind': (value) => (value === 'rc' ? [] : [drop('choose.filter.corner')]),
+  // Without a kind there is no filter to speak of; a corner asks for one, a response or an order for sections.
+  'choose.filter.corner': (value, document) => kindFor(value, document, 'rc'),
+  'choose.filter.response': (value, document) => kindFor(value, document, 'sallen-key'),
+  'choose.filter.order': (value, document) => kindFor(value, document, 'sallen-key'),
+  'choose.filter.kind': (value) =>
+    value === undefined
+      ? [drop('choose.filter')]
+      : [
+          ...(value === 'none' ? [drop('choose.filter.corner')] : []),
+          ...(isSections(value) ? [] : [drop('choose.filter.response'), drop('choose.filter.order')]),
+        ],
+  // Without a number of channels there is no multiplexer to have a resistance.
+  'converter.multiplexed.channels': (value) => (value === undefined ? [drop('converter.multiplexed')] : []),
+  // A modulator and its digital filter belong to one kind of converter only.
+  'converter.architecture': (value) =>
+    value === 'oversampling'
+      ? []
+      : ['modulatorRate', 'digitalFilter', 'outputRate'].map((key) => drop(`converter.${key}`)),
 }
 
 /** `inUse`: the arrangement that the plan stands on at present, where there is one. */
@@ -55,5 +74,12 @@ export function appliesTo(path: string, document: DraftDocument): boolean {
   if (path === 'sensor.commonMode') return getAt(document, 'sensor.wiring') === 'differential'
   if (path === 'shiftReference.voltage') return getAt(document, 'shiftReference.same') === undefined
   if (path === 'sensor.excitation.voltage') return getAt(document, 'sensor.excitation.same') === undefined
+  if (path === 'choose.filter.response' || path === 'choose.filter.order')
+    return isSections(getAt(document, 'choose.filter.kind'))
+  if (path === 'choose.filter.corner') return getAt(document, 'choose.filter.kind') !== 'none'
+  if (path === 'converter.multiplexed.resistance')
+    return getAt(document, 'converter.multiplexed.channels') !== undefined
+  if (/^converter\.(modulatorRate|digitalFilter|outputRate)$/.test(path))
+    return getAt(document, 'converter.architecture') === 'oversampling'
   return true
 }

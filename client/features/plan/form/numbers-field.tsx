@@ -7,10 +7,11 @@ interface NumbersFieldProps {
   path: string
   label: string
   unit: string
+  help?: string
 }
 
 /** A list of values as text: one after another, parted by spaces, semicolons or line ends. */
-export function NumbersField({ path, label, unit }: NumbersFieldProps) {
+export function NumbersField({ path, label, unit, help }: NumbersFieldProps) {
   const field = useField(path)
   const values = Array.isArray(field.value) ? (field.value as number[]) : []
   const text =
@@ -22,7 +23,10 @@ export function NumbersField({ path, label, unit }: NumbersFieldProps) {
       value={text}
       rows={2}
       disabled={field.disabled}
-      help={`Empty: every value of the series. Otherwise the values at hand, such as 1k 2k2 4k7${unit === 'F' ? ' as farads: 1n 2n2 4n7' : ''}.`}
+      help={
+        help ??
+        `Empty: every value of the series. Otherwise the values at hand, such as 1k 2k2 4k7${unit === 'F' ? ' as farads: 1n 2n2 4n7' : ''}.`
+      }
       error={field.typed?.reason ?? field.error}
       onChange={(event) => {
         const next = event.target.value

@@ -56,7 +56,14 @@ export function SchemaField(props: SchemaFieldProps) {
     case 'text':
       return <WordsField {...props} />
     case 'numbers':
-      return <NumbersField path={props.path} label={props.label ?? spec.label} unit={spec.unit} />
+      return (
+        <NumbersField
+          path={props.path}
+          label={props.label ?? spec.label}
+          unit={props.unit ?? spec.unit}
+          {...(props.help ? { help: props.help } : {})}
+        />
+      )
     case 'table':
       return <TableField path={props.path} label={props.label ?? spec.label} columns={spec.columns} />
     case 'group':

@@ -1,6 +1,7 @@
 import { ButtonLink, TextButton } from '#client/components/buttons.tsx'
 import { KeyHint } from '#client/components/kbd.tsx'
 import { usePlanner } from '../planner-context.tsx'
+import { KeepControls } from './keep-controls.tsx'
 import { neighbours, stepTitle } from '../words/steps.ts'
 
 /** Back and next, named after where they lead; undo and redo; the keys of the plan. */
@@ -26,6 +27,7 @@ export function ActionBar() {
           )}
         </span>
       )}
+      <KeepControls />
       <span className="plan-keys">
         <KeyHint of="F8">next finding</KeyHint>
         <KeyHint of="Ctrl Z">undo</KeyHint>

@@ -1,4 +1,4 @@
-import type { Candidate } from '#shared/design/plan.ts'
+import type { Candidate, FilterPlan } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { toRkm } from '#shared/units/rkm.ts'
@@ -31,6 +31,8 @@ const sections = [
   'rails',
   'shiftReference',
   'rules',
+  'calibration',
+  'analysis',
   'parts',
 ]
 
@@ -78,7 +80,7 @@ const alwaysListed = new Set([
   'parts.resistors.tolerance',
 ])
 
-function valueText(spec: FieldSpec, value: unknown, document: DraftDocument): string {
+export function valueText(spec: FieldSpec, value: unknown, document: DraftDocument): string {
   if (value === undefined) return ''
   if (spec.control === 'number' && typeof value === 'number') {
     const own = textAt(document, 'sensor.quantity.unit')
@@ -92,7 +94,12 @@ function valueText(spec: FieldSpec, value: unknown, document: DraftDocument): st
   }
   if (typeof value === 'boolean') return value ? 'yes' : 'no'
   if (typeof value === 'string') return spec.control === 'choice' ? choiceLabel(value) : value
-  if (Array.isArray(value)) return value.length === 0 ? 'none' : `${value.length} values`
+  if (Array.isArray(value)) {
+    if (value.length === 0) return 'none'
+    if (spec.path !== 'calibration.points') return `${value.length} values`
+    const unit = textAt(document, 'sensor.quantity.unit')
+    return (value as number[]).map((point) => formatQuantity(point, unit, { digits: 12 })).join(' and ')
+  }
   return ''
 }
 
@@ -117,10 +124,18 @@ function chosenLines(document: DraftDocument, candidate: Candidate | null): Summ
       })
   if (candidate?.filter)
     lines.push({
-      path: 'choose.filter.corner',
-      label: 'Filter corner',
-      text: candidate.filter.kind === 'rc' ? formatQuantity(candidate.filter.corner, 'Hz') : 'no filter',
+      path: 'choose.filter',
+      label: 'Filter',
+      text: filterText(candidate.filter),
       given: getAt(document, 'choose.filter') !== undefined,
     })
   return lines
+}
+
+function filterText({ kind, order, response, corner }: FilterPlan): string {
+  if (kind === 'none') return 'no filter'
+  const at = `corner ${formatQuantity(corner, 'Hz')}`
+  return order > 1
+    ? `${order} poles, ${choiceLabel(response).split(':')[0] ?? response}, ${choiceLabel(kind)}, ${at}`
+    : `${choiceLabel('rc')}, ${at}`
 }

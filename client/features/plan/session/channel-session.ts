@@ -9,7 +9,7 @@ import {
   type SaveState,
   type Theirs,
 } from '../draft/autosave.ts'
-import { compareDrafts } from '../draft/compare.ts'
+import { compareDrafts } from '#shared/design/document-differences.ts'
 import { tabId } from '../draft/tab-id.ts'
 import {
   forgetUnsaved,

@@ -3,6 +3,7 @@ import { Schematic } from '#client/components/drawings/schematic.tsx'
 import { networkInWorker } from '#client/lib/plan-client.ts'
 import type { Network } from '#shared/network/types.ts'
 import { usePlanner } from '../planner-context.tsx'
+import { leadToPart } from '../words/lead-to-part.ts'
 import { DrawingBoundary } from './drawing-boundary.tsx'
 
 /** The circuit of the chosen arrangement; each part leads to the field that sets it. */
@@ -10,13 +11,7 @@ export function CircuitDrawing() {
   const { candidate, goTo } = usePlanner()
   const network = useNetwork()
   if (!network) return null
-  const lead = (ref: string) => {
-    const part = candidate?.components?.find((known) => known.ref === ref)
-    if (part?.kind === 'amplifier') goTo('parts.amplifier')
-    else if (part?.kind === 'instrumentation-amplifier') goTo('parts.instrumentation')
-    else if (part && !part.fixed) goTo(`choose.values.${ref}`)
-    else goTo(part?.stage === 'converter' ? 'converter.inputResistance' : 'sensor')
-  }
+  const lead = (ref: string) => goTo(leadToPart(ref, candidate?.components ?? []))
   return (
     <section aria-label="Circuit" className="plan-drawing">
       <h2>Circuit</h2>

@@ -64,6 +64,17 @@ export function ConverterStep() {
         paths={c('offsetError', 'gainError', 'inl', 'noise', 'offsetDrift', 'gainDrift')}
       />
       <FoldedFields
+        title="Sampling: kind of converter, multiplexer, digital filter"
+        paths={c(
+          'architecture',
+          'modulatorRate',
+          'digitalFilter',
+          'outputRate',
+          'multiplexed.channels',
+          'multiplexed.resistance',
+        )}
+      />
+      <FoldedFields
         title="Input network and supply of the converter"
         paths={c(
           'supply',

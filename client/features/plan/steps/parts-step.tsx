@@ -97,8 +97,10 @@ function PartRow({ part }: { part: Component }) {
     <tr>
       <th scope="row">{part.ref}</th>
       <td>{part.sets}</td>
-      <td className="n">{part.wanted === undefined ? '' : formatQuantity(part.wanted, unit)}</td>
-      <td className="n">
+      <td className="n" data-label="Wanted">
+        {part.wanted === undefined ? '' : formatQuantity(part.wanted, unit)}
+      </td>
+      <td className="n" data-label="In use">
         {isPassive && part.value !== undefined ? <b>{toRkm(part.value, unit)}</b> : <b>{part.name}</b>}
         {isPassive && part.tolerance !== undefined && part.tolerance > 0 && (
           <small>{share(part.tolerance)}</small>

@@ -5,6 +5,7 @@ import { Link } from 'react-router-dom'
 import { paths } from '#client/lib/paths.ts'
 import { FindingList } from '../frame/findings-column.tsx'
 import { usePlanner } from '../planner-context.tsx'
+import { CheckPanel } from '../review/check-panel.tsx'
 import { Downloads } from '../review/downloads.tsx'
 import { toSummary } from '../review/summary.ts'
 import { fieldId, stepTitle } from '../words/steps.ts'
@@ -26,6 +27,7 @@ export function ReviewStep() {
         </p>
       )}
       <Downloads />
+      <CheckPanel />
       <section aria-label="Findings">
         <h2>Findings</h2>
         {findings.length === 0 ? <NotYet>Nothing is wrong.</NotYet> : <FindingList findings={findings} />}

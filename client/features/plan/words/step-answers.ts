@@ -81,13 +81,18 @@ const words: Record<Exclude<StepId, 'review'>, Words> = {
   },
   filter(_, candidate) {
     if (!candidate?.filter) return null
-    const { kind, corner } = candidate.filter
-    return kind === 'rc' ? `corner ${formatQuantity(corner, 'Hz', { digits: 3 })}` : 'none'
+    const { kind, corner, order } = candidate.filter
+    if (kind === 'none') return 'none'
+    const poles = order > 1 ? `${order} poles, ` : ''
+    return `${poles}corner ${formatQuantity(corner, 'Hz', { digits: 3 })}`
   },
   errors(document, candidate) {
-    const error = candidate?.realised?.endpointErrorQuantity
-    if (!error) return null
+    const budget = candidate?.budget
+    if (!budget) return null
+    const { target, totals, perQuantity } = budget
     const unit = textAt(document, 'sensor.quantity.unit')
-    return `ends off by ${upward(Math.max(Math.abs(error.low), Math.abs(error.high)), unit)}`
+    const total = totals[target?.state ?? 'calibrated'].expanded / perQuantity
+    const against = target ? (target.met ? ', target met' : ', target missed') : ''
+    return `±${upward(total, unit)}${against}`
   },
 }

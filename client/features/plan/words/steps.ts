@@ -42,7 +42,10 @@ const homes: readonly (readonly [beginning: string, step: StepId])[] = [
   ['choose.filter', 'filter'],
   ['choose.drive', 'filter'],
   ['rules.settling', 'filter'],
+  ['rules.aliasAttenuation', 'filter'],
   ['rules.modelError', 'errors'],
+  ['calibration', 'errors'],
+  ['analysis', 'errors'],
 ]
 
 /** The step that holds the field of a path. */

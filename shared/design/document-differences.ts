@@ -1,4 +1,4 @@
-import type { DraftDocument } from './paths.ts'
+import type { DraftDocument } from './document-paths.ts'
 
 /** One key that differs between two drafts; undefined where a side has none. */
 export interface Difference {
