@@ -40,9 +40,12 @@ export function computeBudget(design: Design, spec: ChainSpec, noise: NoiseSumma
     perQuantity,
     target,
     improvements: proposeImprovements(lines, counted, state, coverage, at[state].total.expanded, target),
-    zeroingHurts: zeroed.total.expanded > asBuilt.total.expanded * (1 + 1e-9),
+    zeroingHurts: zeroed.total.expanded > asBuilt.total.expanded * (1 + NOTICED),
   }
 }
+
+/** A total that zeroing makes larger by less than this share is as good as the same. */
+const NOTICED = 0.01
 
 /** Self-heating below this share of the span is left out (engine: error budget). */
 const SMALLEST_HEATING = 1e-6

@@ -241,7 +241,7 @@ export interface Budget {
   /** The target in V of y and whether the expanded uncertainty of its state meets it; null without a target. */
   target: { state: ErrorState; limit: number; met: boolean } | null
   improvements: Improvement[]
-  /** True where zeroing alone makes the total larger than as built. */
+  /** True where zeroing alone makes the total larger than as built, by more than a hundredth. */
   zeroingHurts: boolean
 }
 

@@ -213,6 +213,14 @@ export function toDriveTable(drive: Drive): Table {
   }
 }
 
+/** Differences run over many decades, and a plain number has no prefix to say so. */
+const tiny = (value: number, unit: string): string => {
+  const size = Math.abs(value)
+  if (size === 0 || (unit !== '' && !/[/°]/.test(unit)) || size >= 1e-3) return upward(size, unit)
+  const exponent = Math.floor(Math.log10(size))
+  return `${upward(size / 10 ** exponent, '')}e${exponent} ${unit}`.replace('-', '−').trimEnd()
+}
+
 export function toCheckTable(check: IndependentCheck): Table {
   return {
     columns: [
@@ -229,8 +237,8 @@ export function toCheckTable(check: IndependentCheck): Table {
         line.what,
         formatQuantity(line.ours, line.unit, { digits: 7 }),
         formatQuantity(line.spice, line.unit, { digits: 7 }),
-        upward(line.difference, line.unit),
-        upward(line.allowed, line.unit),
+        tiny(line.difference, line.unit),
+        tiny(line.allowed, line.unit),
         '',
       ],
     })),

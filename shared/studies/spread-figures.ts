@@ -44,7 +44,9 @@ export function describeSample(
     deviation: count > 1 ? Math.sqrt(squares / (count - 1)) : 0,
     quantiles: SHARES.map((share) => [share, at(share)]),
     histogram:
-      high > low ? countBins(all, low, high, at(0.75) - at(0.25)) : evenBins(mean, resolution, count),
+      high > low
+        ? countBins(all, low, high, { quartiles: at(0.75) - at(0.25), resolution })
+        : evenBins(mean, resolution, count),
   }
 }
 
@@ -62,15 +64,34 @@ function quantileOf(sorted: Float64Array, share: number): number {
   return from + (place - below) * (sorted[Math.min(below + 1, sorted.length - 1)]! - from)
 }
 
-/** Width of a bin 2·IQR·n^(−1/3). Source: Freedman and Diaconis, Z. Wahrscheinlichkeitstheorie verw. Gebiete 57 (1981). */
-function countBins(values: Float64Array, low: number, high: number, quartiles: number): Histogram {
-  const width = 2 * quartiles * values.length ** (-1 / 3)
-  const wanted = width > 0 ? Math.ceil((high - low) / width) : MOST_BINS
-  const bins = Math.min(Math.max(wanted, FEWEST_BINS), MOST_BINS)
-  const counts = new Array<number>(bins).fill(0)
-  const scale = bins / (high - low)
-  for (const value of values) counts[Math.min(Math.floor((value - low) * scale), bins - 1)]! += 1
-  return { edges: edgesOf(low, high, bins), counts }
+/**
+ * Width of a bin 2·IQR·n^(−1/3), as a whole number of codes, since readings come in codes: bins of another width would
+ * hold now more of them, now fewer. Source: Freedman and Diaconis, Z. Wahrscheinlichkeitstheorie verw. Gebiete 57 (1981).
+ */
+function countBins(
+  values: Float64Array,
+  low: number,
+  high: number,
+  { quartiles, resolution }: { quartiles: number; resolution: number },
+): Histogram {
+  const wanted = 2 * quartiles * values.length ** (-1 / 3)
+  const least = (high - low + resolution) / MOST_BINS
+  const most = (high - low + resolution) / FEWEST_BINS
+  const width = Math.max(least, Math.min(wanted > 0 ? wanted : least, most))
+  const whole = resolution > 0 ? Math.max(1, Math.ceil(width / resolution - 1e-9)) * resolution : width
+  const filled = Math.ceil((high - low + resolution) / whole - 1e-9)
+  // Few codes make few bins: empty ones at both sides keep the picture's scale.
+  const bins = Math.max(filled, FEWEST_BINS)
+  const start = (low + high) / 2 - (bins * whole) / 2
+  // Edges lie between codes: half a code below the lowest reading, in whole bins from the start.
+  const first = low - resolution / 2 - Math.round((low - resolution / 2 - start) / whole) * whole
+  const counts = new Array<number>(bins + 1).fill(0)
+  for (const value of values) {
+    const at = Math.floor((value - first) / whole)
+    counts[Math.min(Math.max(at, 0), bins)]! += 1
+  }
+  while (counts.length > FEWEST_BINS && counts.at(-1) === 0) counts.pop()
+  return { edges: counts.map((_, i) => first + i * whole).concat(first + counts.length * whole), counts }
 }
 
 const edgesOf = (low: number, high: number, bins: number): number[] =>

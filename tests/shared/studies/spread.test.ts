@@ -285,7 +285,17 @@ describe('boards that clip', () => {
     expectClose(spread.clipped / 40_000, 0.5, { absolute: ERRORS * Math.sqrt(0.25 / 40_000) })
     expect(spread.histogram.counts.reduce((sum, n) => sum + n, 0)).toBe(40_000 - spread.clipped)
     expect(spread.yield?.inside).toBe(40_000 - spread.clipped)
-    expect(spread.histogram.edges.at(-1)).toBeLessThan(1e-3)
+    const { counts, edges } = spread.histogram
+    expect(counts.filter((count, i) => count > 0 && edges[i]! > 1e-3)).toEqual([])
+  })
+
+  it('fall into bins of a whole number of codes, half a code beside the readings', () => {
+    const spread = runSpread(clipping(2.2), { boards: 20_000 })
+    const { edges, counts } = spread.histogram
+    const width = edges[1]! - edges[0]!
+    expect(counts.length).toBeGreaterThanOrEqual(20)
+    expect(counts.length).toBeLessThanOrEqual(61)
+    edges.slice(1).forEach((edge, i) => expectClose(edge - edges[i]!, width, { relative: 1e-9 }))
   })
 
   it('may be all of them: no figure is then made up', () => {
