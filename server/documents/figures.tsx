@@ -1,3 +1,4 @@
+import { View } from '@react-pdf/renderer'
 import type { ReactNode } from 'react'
 import { buildNetworkFor } from '#shared/design/plan-design.ts'
 import type { Candidate, Level, Plan } from '#shared/design/plan.ts'
@@ -121,8 +122,44 @@ function drawSchematic(document: DesignDocument, candidate: Candidate, meta: Not
   })
   const box = enclose({ x: 0, y: 0, width: drawing.width, height: drawing.height }, drawing.shapes)
   const byHeight = Math.max(SMALLEST_SCALE, SCHEMATIC_PX[meta.paper] / box.height)
-  const scale = Math.min(1, BLOCK_PX / box.width, byHeight)
-  return <Drawing shapes={drawing.shapes} box={box} width={box.width * scale * POINTS_PER_PX} />
+  const rows = BLOCK_PX / box.width < SMALLEST_SCALE ? cutBetweenStages(box, drawing.chain) : [box]
+  const widest = Math.max(...rows.map((row) => row.width))
+  const scale = Math.min(1, BLOCK_PX / widest, byHeight)
+  return (
+    <View>
+      {rows.map((row) => (
+        <Drawing key={row.x} shapes={drawing.shapes} box={row} width={row.width * scale * POINTS_PER_PX} />
+      ))}
+    </View>
+  )
+}
+
+/** Right of a boundary between stages, where only the signal's wire crosses, px. */
+const PAST = 6
+
+/** A chain too long for the sheet in rows, each cut where one stage ends; the wire that is cut goes on below. */
+function cutBetweenStages(box: Box, chain: readonly Shape[]): Box[] {
+  const strokes = chain.flatMap((shape) =>
+    shape.type === 'line' && shape.x1 !== shape.x2 && shape.y1 !== shape.y2
+      ? [(shape.x1 + shape.x2) / 2 + PAST]
+      : [],
+  )
+  const count = Math.ceil((box.width * SMALLEST_SCALE) / BLOCK_PX)
+  const end = box.x + box.width
+  const cuts: number[] = []
+  for (let i = 1; i < count; i++) {
+    const ideal = box.x + (box.width * i) / count
+    const inside = strokes.filter((x) => x > (cuts.at(-1) ?? box.x) + PAST && x < end - PAST)
+    const nearest = inside.reduce<number | null>(
+      (best, x) => (best === null || Math.abs(x - ideal) < Math.abs(best - ideal) ? x : best),
+      null,
+    )
+    if (nearest !== null) cuts.push(nearest)
+  }
+  const edges = [box.x, ...cuts, end]
+  return edges
+    .slice(1)
+    .map((right, i) => ({ ...box, x: edges[i] ?? box.x, width: right - (edges[i] ?? box.x) }))
 }
 
 function drawTransfer(design: Design, candidate: Candidate): ReactNode {

@@ -13,6 +13,8 @@ import { HOLD, withSampling } from './stability.ts'
 const CRITERIA = [1, 0.5, 0.25]
 /** More than this share of the acquisition time in use counts as tight. */
 const TIGHT = 0.8
+/** What is left of a kick at the end of the acquisition is no line of the budget. */
+const UNBUDGETED = 'The error budget does not hold this.'
 /** Highest pace of a motion, Hz. */
 const FASTEST = 1e9
 
@@ -73,7 +75,8 @@ export function sizeDrive(design: Design, spec: ChainSpec, dynamics: Dynamics): 
     (most, t) => (most === null || t === null ? null : Math.max(most, t)),
     0,
   )
-  return { ...drive, state: stateOf(slowest, available), text: sentence(drive, slowest, step, design) }
+  const judged = { ...drive, state: stateOf(slowest, available) }
+  return { ...judged, text: sentence(judged, slowest, step, design) }
 }
 
 function stateOf(slowest: number | null, available: number | null): RoomState {
@@ -153,35 +156,46 @@ function resistanceAt(network: Network): number {
   return (at(loaded) - at(network)) / amount
 }
 
-type Judged = Pick<
-  Drive,
-  'kick' | 'criterion' | 'available' | 'average' | 'settled' | 'multiplexed' | 'needed'
->
+type Standing = Pick<Drive, 'average' | 'kick' | 'criterion' | 'state'>
+type Judged = Standing & Pick<Drive, 'available' | 'settled' | 'multiplexed' | 'needed'>
+
+/**
+ * What the average current of sampling costs across the series resistance, LSB. A pin that settles within each sample
+ * draws its charge there, and nothing lasts; 0 where nothing is known.
+ */
+export function lastingDroop({ average, kick, criterion, state }: Standing, lsb: number): number {
+  const isBack = state === 'clear' || state === 'tight'
+  return average === null || (isBack && kick > criterion * lsb) ? 0 : average.droop / lsb
+}
+
+/** What that current costs, as a sentence. */
+export const droopWords = (current: number, codes: number): string =>
+  `Sampling draws ${formatQuantity(current, 'A', { digits: 3, rounding: 'up' })} on average, which costs at most ${formatCodes(codes)} across the series resistance; it is proportional to the level, so that calibration of the span removes it.`
+
+const formatCodes = (x: number) => `${formatQuantity(x, '', { digits: 2, rounding: 'up' })} LSB`
 
 function sentence(drive: Judged, slowest: number | null, step: number, { converter }: Design): string {
   const { kick, criterion, available, settled, average, multiplexed, needed } = drive
   const { input, bits, samplingCapacitance } = converter
   const lsb = (input.high - input.low) / 2 ** bits
   const volts = (v: number) => formatQuantity(v, 'V', { digits: 3, rounding: 'up' })
-  const codes = (x: number) => `${formatQuantity(x, '', { digits: 2, rounding: 'up' })} LSB`
+  const codes = formatCodes
   const time = (t: number) => formatQuantity(t, 's', { digits: 3, rounding: 'up' })
   const other = multiplexed && needed !== null && (multiplexed.needed ?? Infinity) > needed
   const between = other ? ' after the channel before, at the other end of the range,' : ''
   const isBack = available !== null && slowest !== null && slowest <= available
   const second = (): string => {
-    if (slowest === null) return 'The pin never comes to rest: see the stability of its amplifier.'
+    if (slowest === null)
+      return `The pin never comes to rest: see the stability of its amplifier. ${UNBUDGETED}`
     if (slowest === 0) return `It stays within ${codes(criterion)}.`
     const back = `It is back within ${codes(criterion)}${between} after ${time(slowest)}`
     if (available === null) return `${back}; the design states no acquisition time to compare.`
     if (isBack) return `${back}, of the ${time(available)} there are.`
     const left = settled === null || other ? '' : `: ${codes(settled)} are left`
     const enough = samplingCapacitance * (step / (criterion * lsb) - 1)
-    return `It needs ${time(slowest)}${between} to be back within ${codes(criterion)}, and there are ${time(available)}${left}. A reservoir of ${formatQuantity(enough, 'F', { digits: 2, rounding: 'up' })} keeps the pin within that by itself; a smaller series resistor or a longer acquisition lets it settle.`
+    return `It needs ${time(slowest)}${between} to be back within ${codes(criterion)}, and there are ${time(available)}${left}. A reservoir of ${formatQuantity(enough, 'F', { digits: 2, rounding: 'up' })} keeps the pin within that by itself; a smaller series resistor or a longer acquisition lets it settle. ${UNBUDGETED}`
   }
-  // A pin that settles within each sample draws its charge there; only one that does not sags on the whole.
-  const sags = average !== null && average.droop > 0.01 * lsb && (!isBack || kick <= criterion * lsb)
-  const third = sags
-    ? ` Sampling draws ${formatQuantity(average.current, 'A', { digits: 3, rounding: 'up' })} on average, which costs at most ${codes(average.droop / lsb)} across the series resistance; it is proportional to the level, so that calibration of the span removes it.`
-    : ''
+  const droop = lastingDroop(drive, lsb)
+  const third = average !== null && droop > 0.01 ? ` ${droopWords(average.current, droop)}` : ''
   return `Sampling pulls the pin by ${volts(kick)} (${codes(kick / lsb)}). ${second()}${third}`
 }

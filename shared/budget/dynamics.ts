@@ -12,6 +12,8 @@ import type { Dynamics } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import type { ControlledVoltageSource, Network } from '#shared/network/types.ts'
 import { magnitude } from '#shared/numerics/complex.ts'
+import { sincMagnitude } from '#shared/numerics/sinc.ts'
+import { digitalFilterOf } from './noise.ts'
 import { responseChain } from './response-chain.ts'
 
 /** Frequencies between which the bandwidth of a chain is looked for, Hz. */
@@ -33,6 +35,8 @@ export function computeDynamics(design: Design, spec: ChainSpec): Dynamics {
   const respond = prepareResponse(network)
   const passes = (frequency: number) => magnitude(respond(frequency))
   const bandwidth = findBandwidth(passes)
+  const sinc = digitalFilterOf(design)
+  const digital = (frequency: number) => (sinc ? sincMagnitude(sinc, frequency) : 1)
   const wanted = design.sensor.bandwidth
   const fullPower = findFullPower(design, low, high)
   const step = prepareStep(network, { pace: bandwidth ?? FASTEST })
@@ -40,8 +44,9 @@ export function computeDynamics(design: Design, spec: ChainSpec): Dynamics {
   return {
     bandwidth,
     amplifiers: loopBandwidths(network),
-    droopAtBandwidth: wanted === undefined ? null : 1 - passes(wanted) / passes(0),
-    settling,
+    droopAtBandwidth: wanted === undefined ? null : 1 - (digital(wanted) * passes(wanted)) / passes(0),
+    // A digital filter holds as many results as it has orders until nothing of the old level is left in them.
+    settling: settling === null || !sinc ? settling : settling + sinc.order / sinc.outputRate,
     fullPower,
     followsSignal: wanted === undefined || fullPower === null || wanted <= fullPower,
     overshoot: settling === null ? null : findOvershoot(step, settling),

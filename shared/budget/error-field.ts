@@ -89,7 +89,10 @@ export function adjustmentPoints(design: Design): [number, number] {
 function conditionsOf(design: Design): Condition[] {
   const { temperature, sensor, calibration } = design
   const years = calibration.interval
-  const electronics = [...new Set([temperature.low, temperature.calibration, temperature.high])]
+  const { low, high, calibration: workshop } = temperature
+  // An adjustment may be made at a temperature at which the channel never works.
+  const within = workshop > low && workshop < high ? [workshop] : []
+  const electronics = [...new Set([low, ...within, high])]
   if (!sensor.temperature) return electronics.map((t) => ({ temperature: t, sensorTemperature: t, years }))
   const own = [sensor.temperature.low, sensor.temperature.high]
   return electronics.flatMap((t) => own.map((s) => ({ temperature: t, sensorTemperature: s, years })))

@@ -4,7 +4,13 @@ import type { Design } from '#shared/design/schema.ts'
 import { sectionValues } from '#shared/filters/filter-spec.ts'
 import { CHEBYSHEV_RIPPLE, toDb } from '#shared/filters/prototypes.ts'
 import { sectionOf } from '#shared/filters/section-values.ts'
-import { aliasAttenuation, aliasFrequency, ordersFor, samplingRate } from '#shared/filters/wish.ts'
+import {
+  aliasAttenuation,
+  aliasFrequency,
+  ordersFor,
+  rateInReach,
+  samplingRate,
+} from '#shared/filters/wish.ts'
 import { legResistance } from '#shared/sensors/kinds/common.ts'
 import { toleranceBand } from './filter-band.ts'
 import { digitalPart, mainsPickup } from './filter-mains.ts'
@@ -72,7 +78,7 @@ function normalisationOf(kind: FilterPlan['kind'], response: FilterPlan['respons
 }
 
 /** Resistance of the source where it feeds the filter itself, Ω. */
-function seriesBefore(design: Design, { stages }: ChainSpec): number {
+export function seriesBefore(design: Design, { stages }: ChainSpec): number {
   if (stages.some(({ arrangement }) => arrangement.amplifiers > 0)) return 0
   return design.sensor.kind === 'voltage' ? legResistance(design.sensor).value : 0
 }
@@ -117,7 +123,7 @@ function aliasOf(design: Design, real: FilterResponseOf, corner: number): Filter
     reached,
     state: reached >= wanted - 1e-9 ? 'clear' : short,
     orders: ordersFor(design),
-    rateFor: found === null ? null : found + bandwidth,
+    rateFor: found === null ? null : rateInReach(design, found + bandwidth),
   }
 }
 

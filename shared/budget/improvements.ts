@@ -28,22 +28,40 @@ export function proposeImprovements(
   const variance = variances(terms, state)
   const totalWith = (change: Change): number =>
     largestExpanded(terms, state, coverage, variance, change).expanded
-  return lines
+  const found = lines
     .filter((line) => line.share > 0)
     .slice(0, MOST)
-    .flatMap((line): Improvement[] => {
+    .flatMap((line): Found[] => {
       const term = terms.find(({ id }) => id === line.id)
       if (!term) return []
       const needed = findNeeded((times) => totalWith(new Map([[term, times]])), total, wanted)
-      const found = {
-        line: line.id,
-        aim,
-        needed: needed.ok ? needed.times * line.limit : null,
-        after: needed.after,
-        part: findPart(line, terms, term, totalWith, wanted, needed.ok ? needed.times : 1),
-      }
-      return [{ ...found, text: wordsFor(line, found) }]
+      const part = findPart(line, terms, term, totalWith, wanted, needed.ok ? needed.times : 1)
+      return [{ line, aim, needed: needed.ok ? needed.times * line.limit : null, after: needed.after, part }]
     })
+  return merged(found).map(([first, ...others]) => ({
+    ...first,
+    line: first.line.id,
+    text: others.length === 0 ? wordsFor(first) : wordsForAll([first, ...others]),
+  }))
+}
+
+/** What was found for a line, before its words. */
+type Found = Omit<Improvement, 'line' | 'text'> & { line: BudgetLine }
+type Group = [first: Found, ...others: Found[]]
+
+/** Lines of which none alone would do and that one class of parts cures stand together, where the first of them stood. */
+function merged(list: readonly Found[]): Group[] {
+  const groups: Group[] = []
+  for (const one of list) {
+    const { part, needed } = one
+    const same = groups.find(
+      ([first]) =>
+        part !== null && needed === null && first.needed === null && first.part?.name === part.name,
+    )
+    if (same) same.push(one)
+    else groups.push([one])
+  }
+  return groups
 }
 
 /** Share of its limit at which the total comes down to what is wanted; not `ok` where not even 0 does it. */
@@ -104,8 +122,31 @@ const limitWords = (limit: number, unit: string): string =>
     ? formatQuantity(limit, '', { digits: 2, display: 'percent', rounding: 'down' })
     : formatQuantity(limit, unit, { digits: 2, rounding: 'down' })
 
-function wordsFor(line: BudgetLine, found: Omit<Improvement, 'text'>): string {
-  const purpose = found.aim === 'target' ? 'meet the target' : 'halve the total'
+const purposeOf = ({ aim }: Found): string => (aim === 'target' ? 'meet the target' : 'halve the total')
+
+/** `Rf, Rg and R2 over temperature, Rf tolerance`: parts of which the same is said stand together. */
+function namesOf(lines: readonly BudgetLine[]): string {
+  const sources = new Map<string, string[]>()
+  for (const { label, source } of lines) {
+    const own = label.startsWith(`${source} `)
+    const said = own ? label.slice(source.length) : label
+    const before = sources.get(said)
+    if (own) sources.set(said, [...(before ?? []), source])
+    else sources.set(said, [])
+  }
+  return [...sources].map(([said, parts]) => listed(parts) + said).join(', ')
+}
+
+/** `a, b and c`. */
+const listed = (words: readonly string[]): string =>
+  words.length < 2 ? words.join('') : `${words.slice(0, -1).join(', ')} and ${words.at(-1) ?? ''}`
+
+const wordsForAll = (group: Group): string =>
+  `${namesOf(group.map(({ line }) => line))}: none alone would ${purposeOf(group[0])}; with the class ${group[0].part?.name ?? ''} throughout they would`
+
+function wordsFor(found: Found): string {
+  const { line } = found
+  const purpose = purposeOf(found)
   const limits =
     found.needed === null
       ? `even without it the rest would not ${purpose}`

@@ -13,6 +13,11 @@ const SMALLEST_SHARE = 1e-9
 const MOST_DECADES = 8
 /** Values that parts come in: beyond, a network of them has no answer in double precision. Ω and F. */
 const PARTS = { Ω: [1e-3, 1e12], F: [1e-15, 1] } as const
+/** Largest capacitance of an amplifier's input, F. */
+const MOST_INPUT = 1e-6
+/** Adjustment points: within this many spans of the span, and this share of it apart at least. */
+const FARTHEST = 10
+const CLOSEST = 0.01
 /** Largest bias current that any input carries, A. */
 const MOST_BIAS = 1
 
@@ -24,6 +29,9 @@ export function crossFaults(design: Design): Fault[] {
   converterFaults(design, add)
   referenceFaults(design, add)
   partFaults(design, add)
+  smallFaults(design, add)
+  digitalFaults(design, add)
+  calibrationFaults(design, add)
   if (design.temperature.low > design.temperature.high)
     add('temperature.high', 'the temperature range is reversed', `${design.temperature.low} or more, in °C`)
   for (const [ref, value] of Object.entries(design.choose.values ?? {}))
@@ -155,6 +163,12 @@ function referenceFaults(design: Design, add: Add): void {
   if (sensor.kind !== 'bridge' || typeof sensor.excitation !== 'object' || !sensor.excitation.same) return
   const { same, voltage } = sensor.excitation
   const shared = same === 'positive' ? rails.positive : same === 'converter' ? reference?.voltage : shift
+  if (same === 'positive' && rails.positive <= 0)
+    add(
+      'sensor.excitation.same',
+      'the positive rail is not above 0 V and cannot excite the bridge',
+      'a voltage of its own above 0, in V, or a positive rail above 0 V',
+    )
   if (shared === undefined)
     add(
       'sensor.excitation.same',
@@ -166,6 +180,74 @@ function referenceFaults(design: Design, add: Add): void {
       'sensor.excitation.voltage',
       `it is the same source, yet ${voltage} V is not ${shared} V`,
       `${shared}, in V, or leave it out`,
+    )
+}
+
+/** Figures so small that no part has them: a network of them has no answer in double precision. */
+function smallFaults({ converter, parts, rules }: Design, add: Add): void {
+  const least = (path: string, value: number, smallest: number, unit: string, orZero = true): void => {
+    if (value >= smallest || (orZero && value === 0)) return
+    add(path, 'no part has so small a figure', `${orZero ? '0, or ' : ''}${smallest} ${unit} or more`)
+  }
+  least('converter.inputResistance', converter.inputResistance, 1, 'Ω', false)
+  least('converter.switchResistance', converter.switchResistance, 1e-3, 'Ω')
+  if (converter.multiplexed)
+    least('converter.multiplexed.resistance', converter.multiplexed.resistance, 1e-3, 'Ω')
+  least('parts.amplifier.gbw', parts.amplifier.gbw, 1, 'Hz', false)
+  const { common, differential } = parts.amplifier.cin
+  for (const [path, value] of [
+    ['common', common],
+    ['differential', differential],
+  ] as const)
+    if (value > MOST_INPUT)
+      add(`parts.amplifier.cin.${path}`, 'no input has so large a capacitance', `up to ${MOST_INPUT}, in F`)
+  if (rules.settling >= 2 ** (converter.bits - 1))
+    add(
+      'rules.settling',
+      'half the range or more of the converter counts as settled',
+      `below ${2 ** (converter.bits - 1)}, in LSB`,
+    )
+}
+
+/** What a digital filter needs, and what belongs to it. */
+function digitalFaults({ converter }: Design, add: Add): void {
+  const { architecture, digitalFilter, modulatorRate, outputRate } = converter
+  if (outputRate !== undefined && modulatorRate !== undefined && outputRate > modulatorRate)
+    add(
+      'converter.outputRate',
+      'results cannot come faster than the modulator runs',
+      `up to ${modulatorRate}, in Hz`,
+    )
+  if (architecture !== 'oversampling' || digitalFilter === 'none') return
+  if (modulatorRate === undefined)
+    add(
+      'converter.modulatorRate',
+      'the digital filter has no modulator rate to work from',
+      'a number above 0, in Hz',
+    )
+  if (outputRate === undefined)
+    add('converter.outputRate', 'the digital filter has no output data rate', 'a number above 0, in Hz')
+}
+
+/** Two adjustment points have to be told apart, and lie where the chain can be brought. */
+function calibrationFaults({ calibration, sensor }: Design, add: Add): void {
+  const { low, high } = sensor.quantity
+  const span = Math.abs(high - low)
+  const [first, second] = calibration.points
+  calibration.points.forEach((point, i) => {
+    if (Math.abs(point - low) > FARTHEST * span && Math.abs(point - high) > FARTHEST * span)
+      add(
+        `calibration.points.${i}`,
+        'the adjustment point lies far outside the span',
+        `a value within ${FARTHEST} spans of ${low} to ${high}`,
+      )
+  })
+  if (first === undefined || second === undefined || first === second) return
+  if (Math.abs(second - first) < CLOSEST * span)
+    add(
+      'calibration.points.1',
+      'the two adjustment points are too close to set a span by',
+      `a value at least ${CLOSEST * span} away from ${first}, or the same`,
     )
 }
 

@@ -266,15 +266,6 @@ function choiceFindings(design: Design, candidate: Candidate): Finding[] {
         `${stage.ref} has no reference leg with a level of its own: the level chosen for it has no effect.`,
       )
   }
-  if (design.parts.capacitors.dielectric === 'X7R' && candidate.filter?.kind === 'rc')
-    list.push({
-      code: 'class-2-capacitor',
-      severity: 'caution',
-      place: 'C9',
-      path: 'parts.capacitors.dielectric',
-      text: 'C9 is a class 2 ceramic: its value falls with voltage, temperature and age. Take C0G or film in a filter.',
-      numbers: {},
-    })
   const count = candidate.picks?.length ?? 0
   if (choose.pick !== undefined && count > 0 && choose.pick >= count)
     info(

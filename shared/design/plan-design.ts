@@ -27,6 +27,7 @@ import { askedArrangement } from './asked.ts'
 import { splitsFor, tryTwo, type Split } from './plan-two-stages.ts'
 import type { Candidate, Ends, Plan, Realised, StabilityEntry } from './plan.ts'
 import { rankTrial } from './ranking.ts'
+import { rateFindings } from './rate-findings.ts'
 import { DesignRefused, readDesign } from './read.ts'
 import { roundPlan } from './round.ts'
 import type { Design } from './schema.ts'
@@ -255,7 +256,11 @@ function withQuality(design: Design, spec: ChainSpec, candidate: Candidate): Can
     filter: describeFilter(design, spec),
     drive: sizeDrive(design, spec, dynamics),
   }
-  const findings = [...(candidate.findings ?? []), ...qualityFindings(design, quality)]
+  const findings = [
+    ...(candidate.findings ?? []),
+    ...qualityFindings(design, quality),
+    ...rateFindings(design, dynamics, quality.filter),
+  ]
   return { ...candidate, ...quality, findings: worstFirst(findings) }
 }
 

@@ -1,7 +1,10 @@
+import { droopWords, lastingDroop } from '#shared/budget/drive.ts'
 import { filterFindings } from '#shared/filters/findings.ts'
+import { outrunsAcquisition, samplingRate } from '#shared/filters/wish.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import type {
   Budget,
+  BudgetLine,
   Drive,
   Dynamics,
   FilterPlan,
@@ -14,6 +17,7 @@ import type { Design } from './schema.ts'
 
 /** Sentences about stability, error, noise and drive, from codes and numbers, in this one place. */
 
+const percent = (x: number) => formatQuantity(x, '', { digits: 2, display: 'percent' })
 const degrees = (x: number) => formatQuantity(x, '°', { digits: 2, rounding: 'down' })
 
 function stabilityReason(entry: StabilityEntry): Reason {
@@ -72,7 +76,9 @@ export function qualityFindings(design: Design, quality: Quality): Finding[] {
     ...targetFindings(design, quality.budget),
     ...filterFindings(design, quality.filter),
     ...dynamicsFindings(design, quality.dynamics),
+    ...rateFindings(design),
     ...driveFindings(quality.drive),
+    ...droopFindings(design, quality.drive),
   ]
 }
 
@@ -82,6 +88,10 @@ const states = {
   calibrated: 'After zero and span adjustment',
 } as const
 
+/** The line that makes up most of the variance; null where nothing does. */
+const largestOf = ({ lines }: Budget): BudgetLine | null =>
+  lines.reduce<BudgetLine | null>((most, line) => (line.share > (most?.share ?? 0) ? line : most), null)
+
 function targetFindings(design: Design, budget: Budget): Finding[] {
   const list: Finding[] = []
   const { target, perQuantity } = budget
@@ -90,12 +100,15 @@ function targetFindings(design: Design, budget: Budget): Finding[] {
     formatQuantity(volts / perQuantity, unit, { digits: 3, rounding })
   if (target && !target.met) {
     const { expanded } = budget.totals[target.state]
+    const largest = largestOf(budget)
     list.push({
       code: 'target',
       severity: 'over',
       place: 'target',
-      path: 'target.limit',
-      text: `${states[target.state]} the expanded uncertainty is ${inUnit(expanded, 'up')}. ${inUnit(target.limit, 'down')} is required: short by ${inUnit(expanded - target.limit, 'up')}.`,
+      path: largest?.path ?? 'target.limit',
+      text: `${states[target.state]} the expanded uncertainty is ${inUnit(expanded, 'up')}. ${inUnit(target.limit, 'down')} is required: short by ${inUnit(expanded - target.limit, 'up')}.${
+        largest ? ` Largest: ${largest.label}, ${percent(largest.share)}.` : ''
+      }`,
       numbers: { expanded, limit: target.limit },
     })
   }
@@ -125,6 +138,41 @@ function dynamicsFindings(design: Design, dynamics: Dynamics): Finding[] {
       path: 'parts.amplifier.slewRate',
       text: `The full span is slewed from ${hertz(dynamics.fullPower, 'down')} on; the signal reaches to ${hertz(design.sensor.bandwidth ?? 0, 'up')}. Take a faster amplifier.`,
       numbers: { fullPower: dynamics.fullPower },
+    },
+  ]
+}
+
+function rateFindings(design: Design): Finding[] {
+  const { acquisitionTime, architecture, modulatorRate } = design.converter
+  const rate = samplingRate(design.converter)
+  if (rate === null || acquisitionTime === undefined || !outrunsAcquisition(design)) return []
+  const seconds = (t: number, rounding: 'up' | 'down') => formatQuantity(t, 's', { digits: 3, rounding })
+  const isModulator = architecture === 'oversampling' && modulatorRate !== undefined
+  return [
+    {
+      code: 'sample-rate',
+      severity: 'over',
+      place: 'adc',
+      path: isModulator ? 'converter.modulatorRate' : 'converter.sampleRate',
+      text: `At ${formatQuantity(rate, 'Hz', { digits: 3 })} there is ${seconds(1 / rate, 'down')} between samples; acquisition takes ${seconds(acquisitionTime, 'up')}. Sample at ${formatQuantity(1 / acquisitionTime, 'Hz', { digits: 3, rounding: 'down' })} or less.`,
+      numbers: { rate, acquisitionTime },
+    },
+  ]
+}
+
+/** A drive that does not settle says so itself, droop included. */
+function droopFindings({ converter }: Design, drive: Drive): Finding[] {
+  const lsb = (converter.input.high - converter.input.low) / 2 ** converter.bits
+  const codes = lastingDroop(drive, lsb)
+  if (drive.average === null || codes <= drive.criterion || drive.state === 'over') return []
+  return [
+    {
+      code: 'drive-droop',
+      severity: 'caution',
+      place: 'adc',
+      path: 'choose.drive',
+      text: `${droopWords(drive.average.current, codes)} The error budget does not hold it; a smaller R9 makes it less.`,
+      numbers: { current: drive.average.current, droop: codes },
     },
   ]
 }

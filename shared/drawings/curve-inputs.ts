@@ -104,7 +104,7 @@ export function stepPlot(
   const floor = criterion / 50
   return {
     plot: {
-      across: { name: 'Time after the step', unit: 's', scale: 'linear' },
+      across: { name: 'Time after the step', unit: 's', scale: 'linear', from: 0 },
       panels: [
         {
           name: 'Converter input',

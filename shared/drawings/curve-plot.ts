@@ -1,13 +1,15 @@
 import type { Ends } from '#shared/design/plan.ts'
 import { formatQuantity, type DecimalSign } from '#shared/units/format-quantity.ts'
 import { logTicks, ticks, tickWords } from './axis.ts'
+import { lineNames, lineNumbers, nameLines, nameOf, type NamePlace } from './curve-names.ts'
 import { verticalDimension } from './dimension.ts'
 import { circle, line, polyline, roundTo, text, type Box, type Point, type Shape } from './shapes.ts'
 import { textWidth } from './text-width.ts'
 
 /** Curves over one common axis, in one or more panels above each other: responses, loops, spectra. */
 export interface CurvePlot {
-  across: { name: string; unit: string; scale: Scale }
+  /** `from` is where the axis begins at the latest. */
+  across: { name: string; unit: string; scale: Scale; from?: number }
   panels: Panel[]
   /** Places that are marked through all panels: a corner, a crossover. */
   marks: PlotMark[]
@@ -60,20 +62,20 @@ export interface CurveDrawing {
   across(x: number): number
 }
 
+const WIDTH = 560
 const LEFT = 64
 const BOTTOM = 46
 const BETWEEN = 26
 const NAME_ROW = 18
 const MARK_ROW = 14
-const NAME_GAP = 13
 const MOST_NAME = 150
 
 /** Lays the panels out below each other, marks with their words above them. Lengths in px. */
 export function layoutCurvePlot(plot: CurvePlot, options: CurveOptions = {}): CurveDrawing {
-  const { width = 560, panel: height = 170, decimalSign = '.' } = options
-  const names = plot.panels
-    .flatMap((panel) => nameLines(panel))
-    .map(({ name }) => textWidth(name, 'line-name'))
+  const { width = WIDTH, panel: height = 170, decimalSign = '.' } = options
+  const names = plot.panels.flatMap((panel) =>
+    nameLines(panel).map((curve) => textWidth(nameOf(curve, panel), 'line-name')),
+  )
   const right = Math.min(MOST_NAME, Math.max(0, ...names)) + 22
   const domain = domainOf(plot)
   const left = LEFT
@@ -130,7 +132,7 @@ export function domainOf({ panels, across }: CurvePlot): Ends {
     panel.lines.flatMap(({ x }) => x.filter((v) => across.scale === 'linear' || v > 0)),
   )
   // A spread of a large list would overflow the stack.
-  const low = all.reduce((a, b) => Math.min(a, b), Infinity)
+  const low = all.reduce((a, b) => Math.min(a, b), across.from ?? Infinity)
   const high = all.reduce((a, b) => Math.max(a, b), -Infinity)
   return low < high ? { low, high } : { low: 1, high: 10 }
 }
@@ -201,6 +203,7 @@ function panelShapes(panel: Panel, { area, x, domain, plot, options }: PanelPlac
     })
     return runsWithin(points, area.y, bottom).map((run) => polyline(style, run))
   })
+  const place: NamePlace = { area, x, free, width: options.width ?? WIDTH }
   return [
     ...grid,
     ...panel.levels.flatMap(({ y: level, words }) => [
@@ -208,7 +211,8 @@ function panelShapes(panel: Panel, { area, x, domain, plot, options }: PanelPlac
       text('axis-text', right - 4, y(level) - 4, words, 'end', { on: 'sheet' }),
     ]),
     ...lines,
-    ...lineNames(panel, area, y),
+    ...lineNumbers(panel, place),
+    ...lineNames(panel, place),
     ...dimensionShapes(panel, x, y, domain),
     line('axis', area.x, y(ys[0] ?? range.low), area.x, y(ys.at(-1) ?? range.high)),
     ...ys.flatMap((value, i) => [
@@ -239,40 +243,6 @@ function runsWithin(points: readonly Point[], top: number, bottom: number): Poin
   })
   if (run.length > 0) runs.push(run)
   return runs.filter((list) => list.length > 1)
-}
-
-/** Curves that carry a name: the limits of tolerance are named once. */
-function nameLines(panel: Panel): PlotLine[] {
-  const band = panel.lines.find(({ look }) => look === 'band')
-  const named = panel.lines.filter((curve) => curve.look !== 'band' || curve === band)
-  return named.length > 1 ? named : []
-}
-
-/** Names at the right ends of the curves, moved apart where they would touch. */
-function lineNames(panel: Panel, area: Box, y: (value: number) => number): Shape[] {
-  const placed = nameLines(panel)
-    .map((curve) => ({ curve, at: y(curve.y.at(-1) ?? 0) }))
-    .sort((a, b) => a.at - b.at)
-  let taken = area.y - NAME_GAP
-  const rows = placed.map(({ curve, at }) => {
-    taken = Math.max(at, taken + NAME_GAP)
-    return { curve, at: taken }
-  })
-  // What was pushed past the bottom pushes back from there.
-  let free = area.y + area.height
-  for (const row of [...rows].reverse()) {
-    row.at = Math.min(row.at, free)
-    free = row.at - NAME_GAP
-  }
-  return rows.map(({ curve, at }) =>
-    text(
-      curve.look === 'other' ? 'key-text' : 'line-name',
-      area.x + area.width + 8,
-      at + 4,
-      curve.name,
-      'start',
-    ),
-  )
 }
 
 function dimensionShapes(
@@ -325,6 +295,8 @@ function placeMarks(
 
 /** Room for the words of a tick, px. */
 const TICK = 56
+/** Ticks of a linear axis. */
+const FEWEST = 4
 
 const acrossTicks = (
   { across }: Pick<CurvePlot, 'across'>,
@@ -332,7 +304,13 @@ const acrossTicks = (
   length: number,
 ): number[] => {
   const count = Math.max(2, Math.floor(length / TICK))
-  return across.scale === 'log' ? logTicks(low, high, count) : ticks(low, high, count)
+  if (across.scale === 'log') return logTicks(low, high, count)
+  // Round steps are wider than those asked for: ask for more until there are enough to read between.
+  for (let asked = count; asked < count + FEWEST; asked += 1) {
+    const found = ticks(low, high, asked)
+    if (found.length >= FEWEST) return found
+  }
+  return ticks(low, high, count + FEWEST)
 }
 
 function axisAcross(

@@ -2,7 +2,8 @@ import type { Ends, Level, RoomState } from '#shared/design/plan.ts'
 import { formatQuantity, formatRange, formatRoom, type DecimalSign } from '#shared/units/format-quantity.ts'
 
 /**
- * The figures of a node as they are printed: levels with four significant digits, room never better than it is, clip
+ * The figures of a node as they are printed: levels with four significant digits (those of the worst
+ * case rounded outward), room never better than it is, clip
  * points rounded inward. Worst case over every board unless `worst` is false.
  */
 
@@ -126,8 +127,8 @@ export interface LevelTable {
 
 /** The table that is the text alternative of the diagram: five lines for every node. */
 export function levelTable(levels: readonly Level[], options: FigureOptions): LevelTable {
-  const range = (ends: Ends, unit: string) =>
-    formatRange(ends.low, ends.high, unit, { zeros: 'keep', unitOnce: true, ...signOf(options) })
+  const range = (ends: Ends, unit: string, rounding: 'nearest' | 'outward' = 'nearest') =>
+    formatRange(ends.low, ends.high, unit, { zeros: 'keep', unitOnce: true, rounding, ...signOf(options) })
   const row = (name: string, cell: (level: Level) => LevelCell) => ({
     name,
     cells: levels.map((level) =>
@@ -148,7 +149,7 @@ export function levelTable(levels: readonly Level[], options: FigureOptions): Le
     rows: [
       row('Signal', (level) => ({
         text: range(level.nominal, level.unit),
-        ...(options.worst ? { small: `any board ${range(level.worst, level.unit)}` } : {}),
+        ...(options.worst ? { small: `any board ${range(level.worst, level.unit, 'outward')}` } : {}),
       })),
       row('Linear region', (level) => ({ text: range(level.region, level.unit) })),
       row('Room above', room('upper')),

@@ -39,11 +39,15 @@ export function levelMarks(level: Level, scale: BayScale, options: FigureOptions
 
 function words(level: Level, name: MarkName, volts: number, options: FigureOptions): string {
   const decimalSign = options.decimalSign ?? '.'
-  const quantity = (value: number, unit: string) =>
-    formatQuantity(value, unit, { zeros: 'keep', decimalSign })
   const upper = name.includes('high') || name === 'upper limit'
   const side = upper ? 'upper' : 'lower'
-  const parts = [level.title, name, quantity(volts, level.unit)]
+  // What any board may reach is never printed nearer to the signal than it is.
+  const rounding = !name.startsWith('worst') ? 'nearest' : upper ? 'up' : 'down'
+  const parts = [
+    level.title,
+    name,
+    formatQuantity(volts, level.unit, { zeros: 'keep', rounding, decimalSign }),
+  ]
   if (name.endsWith('limit')) {
     const clip = clipText(level, side, options)
     const at = upper ? level.roomAt.high : level.roomAt.low

@@ -1,13 +1,15 @@
 import type { FilterPlan, Finding } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
-import { MOST_POLES } from './prototypes.ts'
+import { MOST_POLES, responseNames, responses } from './prototypes.ts'
 import { rateForSixPoles } from './wish.ts'
 
 /** Gain-bandwidth wanted of a section's amplifier over Q·f0, times its noise gain (method: amplifier need). */
 const GBW_RATIO = 100
 /** A section of fixed values that misses its f0 or Q by more is told, fraction. */
 const MISSED = 0.02
+/** Beyond this it is another filter, fraction. */
+const FAR = 0.1
 /** The drive of an even order is to lie this far above the corner. */
 const DRIVE_RATIO = 10
 
@@ -33,16 +35,17 @@ function aliasFindings(design: Design, { alias, kind }: FilterPlan): Finding[] {
   if (!alias || alias.state === 'clear') return []
   const stated = design.rules.aliasAttenuation !== undefined
   const { frequency, wanted, reached, rateFor } = alias
-  const responses = Object.entries(alias.orders).flatMap(([response, order]) =>
-    order === null ? [] : [{ response, order }],
-  )
-  const fewest = responses.reduce<(typeof responses)[number] | null>(
+  const reaching = responses.flatMap((response) => {
+    const order = alias.orders[response]
+    return order === null ? [] : [{ response, order }]
+  })
+  const fewest = reaching.reduce<(typeof reaching)[number] | null>(
     (best, one) => (best === null || one.order < best.order ? one : best),
     null,
   )
   const sixAt = rateForSixPoles(design, 'butterworth')
   const cure = fewest
-    ? `${fewest.order === 1 ? 'One pole' : `${fewest.order} poles`} (${fewest.response}) would reach it`
+    ? `${fewest.order === 1 ? 'One pole' : `${fewest.order} poles`} (${responseNames[fewest.response]}) would reach it`
     : `${MOST_POLES} poles do not reach it at this rate${sixAt === null ? '' : `; from ${hertz(sixAt)} on they would`}`
   const faster = rateFor === null ? '' : ` The filter as it is would reach it at ${hertz(rateFor)}.`
   return [
@@ -98,7 +101,18 @@ function valueFindings(
       Math.abs(values.f0 / wanted.f0 - 1),
       wanted.q === null || values.q === null ? 0 : Math.abs(values.q / wanted.q - 1),
     )
-    if (fixed.length === 0 || off < MISSED) return []
+    if (off < MISSED) return []
+    if (fixed.length === 0)
+      return [
+        {
+          code: 'filter-values',
+          severity: off > FAR ? 'over' : 'caution',
+          place: ref,
+          path: 'parts.capacitors',
+          text: `No allowed values bring ${ref === 'R9' ? 'the last pole' : `section ${ref} of the filter`} nearer than ${percent(off)} to its frequency or Q. Allow more capacitors, or a wider window of resistors.`,
+          numbers: { off },
+        },
+      ]
     return [
       {
         code: 'filter-fixed-values',

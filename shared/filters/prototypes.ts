@@ -21,6 +21,13 @@ export const MOST_POLES = 6
 
 export const responses = ['butterworth', 'bessel', 'chebyshev'] as const satisfies readonly FilterResponse[]
 
+/** As people write them. */
+export const responseNames: Record<FilterResponse, string> = {
+  butterworth: 'Butterworth',
+  bessel: 'Bessel',
+  chebyshev: 'Chebyshev',
+}
+
 /** A pair of poles, or a real one where `q` is null. `f0` relative to the −3 dB corner. */
 export interface PoleSection {
   f0: number

@@ -35,6 +35,27 @@ export function samplingRate(converter: Design['converter']): number | null {
   return (architecture === 'oversampling' ? modulatorRate : undefined) ?? sampleRate ?? null
 }
 
+/** A rate beyond this many times the present one is another converter, not a cure. */
+const MOST_FASTER = 100
+/** Rates are compared with this much of a rounding, fraction. */
+const ROUNDING = 1e-9
+
+/** A sample rate (Hz) that this converter could be run at: null beyond what its acquisition or its present rate allow. */
+export function rateInReach({ converter }: Design, rate: number): number | null {
+  const present = samplingRate(converter)
+  const fastest = Math.min(
+    converter.acquisitionTime === undefined ? Infinity : 1 / converter.acquisitionTime,
+    present === null ? Infinity : MOST_FASTER * present,
+  )
+  return rate <= fastest * (1 + ROUNDING) ? rate : null
+}
+
+/** Whether samples follow each other faster than the converter acquires one. */
+export function outrunsAcquisition({ converter }: Design): boolean {
+  const rate = samplingRate(converter)
+  return rate !== null && rate * (converter.acquisitionTime ?? 0) > 1 + ROUNDING
+}
+
 /** Attenuation wanted there, dB: as stated, else a full-scale interferer down to one code, 20·log10(2^N). */
 export const aliasAttenuation = ({ rules, converter }: Design): number =>
   rules.aliasAttenuation ?? 20 * Math.log10(2 ** converter.bits)
@@ -73,7 +94,10 @@ export function ordersFor(design: Design): Record<FilterResponse, number | null>
   return Object.fromEntries(entries) as Record<FilterResponse, number | null>
 }
 
-/** Sample rate (Hz) at which six poles of a response reach the attenuation wanted, with the corner that they would have. */
+/**
+ * Sample rate (Hz) at which six poles of a response reach the attenuation wanted, with the corner that they would have;
+ * null without a signal bandwidth or where the converter cannot be run that fast.
+ */
 export function rateForSixPoles(design: Design, response: FilterResponse): number | null {
   const { bandwidth } = design.sensor
   if (bandwidth === undefined) return null
@@ -86,7 +110,7 @@ export function rateForSixPoles(design: Design, response: FilterResponse): numbe
     if (toDb(sectionsGain(sections, middle)) >= wanted) high = middle
     else low = middle
   }
-  return corner * high + bandwidth
+  return rateInReach(design, corner * high + bandwidth)
 }
 
 /**

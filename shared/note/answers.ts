@@ -77,9 +77,6 @@ function errorAsBuilt(design: Design, plan: Plan, candidate: Candidate): Answer 
     const { totals, target, perQuantity } = candidate.budget
     const state = target?.state ?? 'calibrated'
     const expanded = upward(totals[state].expanded / perQuantity, unit)
-    // The errors act about the nominal end points, which miss their targets already.
-    const missed = candidate.realised?.endpointError ?? { low: 0, high: 0 }
-    const volts = totals.asBuilt.worst + Math.max(Math.abs(missed.low), Math.abs(missed.high))
     return {
       label: `Expanded uncertainty, ${uncapital(stateWords[state])}`,
       figure: `±${expanded}`,
@@ -87,7 +84,7 @@ function errorAsBuilt(design: Design, plan: Plan, candidate: Candidate): Answer 
         target
           ? `Required: ±${formatQuantity(target.limit / perQuantity, unit, { digits: 3 })}`
           : 'No target is stated',
-        `As built, worst case: ±${upward(volts / perQuantity, unit)}`,
+        `As built, worst case: ±${upward(totals.asBuilt.worst / perQuantity, unit)}`,
       ],
       ...(target && !target.met ? { state: 'over' as const } : {}),
     }

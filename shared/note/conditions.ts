@@ -77,7 +77,7 @@ export function toAssumptions(design: Design, candidate: Candidate | null): stri
   lines.push(
     'Part figures are guaranteed limits at 25 °C, except open-loop gain, gain-bandwidth product and output resistance, which are typical.',
     'Levels, clip points and room are printed rounded inward, errors rounded up: no figure here is better than what was computed.',
-    'Not covered by this note: noise, stability into capacitive loads, ageing and the removal of errors by calibration.',
+    'Not covered by this note: protection and interference, layout, leakage of the board, and what a sensor does that its figures do not say.',
   )
   return lines
 }

@@ -1,6 +1,7 @@
 import type { Candidate, Plan } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import type { Spread } from '#shared/studies/types.ts'
+import { responseNames } from '#shared/filters/prototypes.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { figure, sentence, upward } from './figures.ts'
 import {
@@ -111,7 +112,9 @@ function spreadSection(input: QualityInput): Section | null {
   const items = [
     ...(words ? [sentence(words)] : []),
     `Mean ${value(spread.mean)}, standard deviation ${value(spread.deviation)}; the first-order budget has ${value(spread.budget.deviation)}, so that the run differs by ${formatQuantity(spread.budget.difference, '', { digits: 2 })} %.`,
-    `${formatQuantity(spread.clipped, '', { digits: 7 })} boards clip somewhere in the span; they are counted and left out of the figures.`,
+    spread.clipped === 0
+      ? 'No board clips anywhere in the span.'
+      : `${formatQuantity(spread.clipped, '', { digits: 7 })} ${spread.clipped === 1 ? 'board clips' : 'boards clip'} somewhere in the span: counted as outside, and left out of the figures.`,
   ]
   return section(
     'spread',
@@ -157,7 +160,7 @@ function filter({ candidate, design, number }: QualityInput): Section | null {
   const lines: string[] = []
   if (found.kind !== 'none')
     lines.push(
-      `${kinds[found.kind]}${found.order > 1 ? ` of order ${found.order}, ${found.response}` : ''}: corner ${figure(found.corner, 'Hz')}, over tolerance ${figure(found.band.corner.low, 'Hz')} to ${figure(found.band.corner.high, 'Hz')}.`,
+      `${kinds[found.kind]}${found.order > 1 ? ` of order ${found.order}, ${responseNames[found.response]}` : ''}: corner ${figure(found.corner, 'Hz')}, over tolerance ${figure(found.band.corner.low, 'Hz')} to ${figure(found.band.corner.high, 'Hz')}.`,
     )
   if (found.resistance > 0)
     lines.push(`At the pin ${figure(found.resistance, 'Ω')} and ${figure(found.capacitance, 'F')}.`)

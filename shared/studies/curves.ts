@@ -2,14 +2,15 @@ import { openLoop, prepareResponse } from '#shared/analysis/ac.ts'
 import { solveDc } from '#shared/analysis/dc.ts'
 import { probeNoise } from '#shared/analysis/noise.ts'
 import { prepareStep } from '#shared/analysis/step-response.ts'
-import type { ValueSet } from '#shared/analysis/system.ts'
 import { computeDynamics } from '#shared/budget/dynamics.ts'
+import { filterBand } from '#shared/budget/filter-band.ts'
+import { seriesBefore } from '#shared/budget/filter-plan.ts'
 import { nameNoise, summariseNoise } from '#shared/budget/noise.ts'
 import { plainAmplifiers, responseChain } from '#shared/budget/response-chain.ts'
 import { withSampling } from '#shared/budget/stability.ts'
 import { buildChain, type ChainSpec } from '#shared/design/chain.ts'
-import { temperatureSpan } from '#shared/design/references.ts'
 import type { Design } from '#shared/design/schema.ts'
+import { sectionsGain } from '#shared/filters/prototypes.ts'
 import type { Network } from '#shared/network/types.ts'
 import { magnitude, phase } from '#shared/numerics/complex.ts'
 import type { BodePlot, Curves, LoopPlot, NoisePlot, StepPlot } from './types.ts'
@@ -18,6 +19,8 @@ import type { BodePlot, Curves, LoopPlot, NoisePlot, StepPlot } from './types.ts
 const POINTS = { bode: 160, loop: 120, step: 200, noise: 140 } as const
 /** Sources of noise that get a line of their own. */
 const LARGEST = 4
+/** A band narrower than this everywhere is that of exact parts, dB. */
+const NARROWEST = 1e-9
 const DEGREES = 180 / Math.PI
 
 /** Lines of the plots about frequency and time, of the chain with the measurand at quantity.low, real amplifiers. */
@@ -26,7 +29,7 @@ export function computeCurves(design: Design, spec: ChainSpec): Curves {
   const dynamics = computeDynamics(design, spec)
   const corner = dynamics.bandwidth ?? 1e6
   return {
-    bode: bodeOf(design, network, corner),
+    bode: bodeOf(design, spec, network, corner),
     step: stepOf(design, spec, network, { corner, settling: dynamics.settling }),
     loops: loopsOf(withSampling(design, network)),
     noise: noiseOf(design, spec, network),
@@ -40,17 +43,18 @@ function spaced(from: number, to: number, count: number): number[] {
 
 const decibels = (ratio: number): number => 20 * Math.log10(Math.max(ratio, 1e-30))
 
-function bodeOf(design: Design, network: Network, corner: number): BodePlot {
+function bodeOf(design: Design, spec: ChainSpec, network: Network, corner: number): BodePlot {
   const frequency = spaced(corner / 1e3, Math.min(corner * 1e4, 1e9), POINTS.bode)
   const respond = prepareResponse(network)
   const dc = respond(0)
   const found = frequency.map(respond)
   const start = phase(dc)
+  const level = found.map((value) => decibels(magnitude(value) / magnitude(dc)))
   return {
     frequency,
-    magnitude: found.map((value) => decibels(magnitude(value) / magnitude(dc))),
+    magnitude: level,
     phase: unwrap(found.map((value) => (phase(value) - start) * DEGREES)),
-    band: bandOf(network, frequency, tolerances(design, network)),
+    band: bandOf(design, spec, frequency, level),
   }
 }
 
@@ -66,56 +70,26 @@ function unwrap(angles: readonly number[]): number[] {
   })
 }
 
-interface Box {
-  ref: string
-  kind: 'resistor' | 'capacitor'
-  value: number
-  reach: number
-}
-
-/** Parts of the filter that are bought, with how far they go over temperature. */
-function tolerances(design: Design, network: Network): Box[] {
-  const span = temperatureSpan(design)
-  return network.elements.flatMap((e): Box[] => {
-    if ((e.kind !== 'resistor' && e.kind !== 'capacitor') || e.fixed || e.stage !== 'filter') return []
-    const reach = Math.min(e.tolerance + e.drift * span, 0.99)
-    return reach > 0 ? [{ ref: e.ref, kind: e.kind, value: e.value, reach }] : []
-  })
-}
-
-/** Parts of which every vertex is drawn; with more, each class moves as one. */
-const MOST_CORNERS = 4
-
 /**
- * Lowest and highest magnitude over the vertices of the filter's parts, relative to DC; of a filter of more than four
- * parts over the four vertices of its two classes, all resistors and all capacitors together.
+ * Lowest and highest magnitude over the tolerance of the filter's parts, relative to DC, dB: the band of the printed
+ * figures, laid around what the chain gives nominally. Null without a filter or with exact parts.
  */
-function bandOf(network: Network, frequency: readonly number[], boxes: readonly Box[]): BodePlot['band'] {
-  if (boxes.length === 0) return null
-  const groups =
-    boxes.length <= MOST_CORNERS
-      ? boxes.map((box) => [box])
-      : (['resistor', 'capacitor'] as const).map((kind) => boxes.filter((box) => box.kind === kind))
-  let sets: ValueSet[] = [{}]
-  for (const group of groups.filter((some) => some.length > 0))
-    sets = sets.flatMap((set) =>
-      [-1, 1].map((side) => ({
-        ...set,
-        ...Object.fromEntries(group.map(({ ref, value, reach }) => [ref, value * (1 + side * reach)])),
-      })),
-    )
-  const low = frequency.map(() => Infinity)
-  const high = frequency.map(() => -Infinity)
-  for (const set of sets) {
-    const respond = prepareResponse(network, { model: 'real', set })
-    const dc = magnitude(respond(0))
-    frequency.forEach((f, i) => {
-      const level = decibels(magnitude(respond(f)) / dc)
-      low[i] = Math.min(low[i] ?? Infinity, level)
-      high[i] = Math.max(high[i] ?? -Infinity, level)
-    })
-  }
-  return { low, high }
+function bandOf(
+  design: Design,
+  spec: ChainSpec,
+  frequency: readonly number[],
+  level: readonly number[],
+): BodePlot['band'] {
+  if (spec.filter.kind === 'none') return null
+  const band = filterBand(design, spec.filter, seriesBefore(design, spec))
+  const shifts = frequency.map((f) => {
+    const { low, high } = band.gain(f)
+    const nominal = sectionsGain(band.nominal, f)
+    return { low: decibels(low / nominal), high: decibels(high / nominal) }
+  })
+  if (shifts.every(({ low, high }) => high - low < NARROWEST)) return null
+  const around = (side: 'low' | 'high') => level.map((own, i) => own + (shifts[i]?.[side] ?? 0))
+  return { low: around('low'), high: around('high') }
 }
 
 function stepOf(

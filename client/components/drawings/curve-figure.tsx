@@ -8,6 +8,7 @@ import {
   type ReactNode,
 } from 'react'
 import { ValueField } from '#client/components/value-field.tsx'
+import { withPower } from '#client/lib/powers.ts'
 import { usePreferences } from '#client/lib/preferences.ts'
 import type { NamedPlot } from '#shared/drawings/curve-inputs.ts'
 import {
@@ -163,7 +164,7 @@ function headOf(heads: readonly CurveReading[], index: number): string {
 }
 
 const figureOf = ({ value, unit }: CurveReading, decimalSign: DecimalSign): string =>
-  value === null ? '–' : formatQuantity(value, unit, { digits: 3, decimalSign })
+  value === null ? '–' : withPower(formatQuantity(value, unit, { digits: 3, decimalSign }))
 
 function readingText(plot: CurvePlot, cursor: number, decimalSign: DecimalSign): string {
   const heads = readCurves(plot, cursor)

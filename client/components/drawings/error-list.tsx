@@ -19,6 +19,8 @@ interface ErrorListProps {
 type Rounding = 'nearest' | 'up' | 'down'
 
 const ROW = { height: 12, bar: 9 } as const
+/** The figure behind a bar with the gap before it, px. */
+const MOST_FIGURE = 96
 
 /**
  * Terms of the error, largest first, as a list: the name leads to what sets it, the bar is its standard uncertainty.
@@ -27,13 +29,14 @@ const ROW = { height: 12, bar: 9 } as const
 export function ErrorList({ chart, unit, label, details, onOpen }: ErrorListProps) {
   const { decimalSign = '.' } = usePreferences()
   const list = useRef<HTMLUListElement>(null)
-  const [holder, width] = useWidth(80, 420, 300)
+  const [holder, cell] = useWidth(MOST_FIGURE + 60, MOST_FIGURE + 420, MOST_FIGURE + 300)
+  const width = cell - MOST_FIGURE
   const end = chartEnd(chart)
   const figure = (value: number) =>
-    formatQuantity(value, unit, { digits: 2, rounding: 'outward', decimalSign })
+    formatQuantity(value, unit, { digits: 3, rounding: 'outward', zeros: 'keep', decimalSign })
   /** What is left is never printed larger than it is, what is missing never smaller. */
   const gap = (value: number, rounding: Rounding) =>
-    formatQuantity(value, unit, { digits: rounding === 'nearest' ? 4 : 2, rounding, decimalSign })
+    formatQuantity(value, unit, { digits: rounding === 'nearest' ? 4 : 3, rounding, decimalSign })
   const share = (value: number) => formatQuantity(value, '', { digits: 2, display: 'percent', decimalSign })
 
   const handleKey = (event: KeyboardEvent<HTMLUListElement>) => {
@@ -49,7 +52,7 @@ export function ErrorList({ chart, unit, label, details, onOpen }: ErrorListProp
     <div className="error-list">
       <div className="error-head" aria-hidden="true">
         <span>What varies</span>
-        <span ref={holder}>Standard uncertainty</span>
+        <span>Standard uncertainty</span>
         <span>Share of variance</span>
       </div>
       <ul ref={list} aria-label={label} onKeyDown={handleKey}>
@@ -73,7 +76,7 @@ export function ErrorList({ chart, unit, label, details, onOpen }: ErrorListProp
           </li>
         )}
       </ul>
-      <Total chart={chart} end={end} width={width} figure={figure} gap={gap} />
+      <Total chart={chart} holder={holder} end={end} width={width} figure={figure} gap={gap} />
     </div>
   )
 }
@@ -93,13 +96,15 @@ function Bar({ length, children }: { length: number; children: ReactNode }) {
 
 interface TotalProps {
   chart: ErrorBars
+  /** Measures the cell of a bar: the head above it is not there on a narrow page. */
+  holder(node: HTMLElement | null): void
   end: number
   width: number
   figure(value: number): string
   gap(value: number, rounding: Rounding): string
 }
 
-function Total({ chart, end, width, figure, gap }: TotalProps) {
+function Total({ chart, holder, end, width, figure, gap }: TotalProps) {
   const shapes = useMemo(() => {
     const total = totalBar(chart, end)
     const list: Shape[] = [rect('bar-signal', { x: 0, y: 5, width: width * total.bar, height: ROW.bar })]
@@ -123,7 +128,7 @@ function Total({ chart, end, width, figure, gap }: TotalProps) {
   return (
     <p className="error-total">
       <span className="error-what">Expanded uncertainty</span>
-      <span className="error-bar">
+      <span className="error-bar" ref={holder}>
         <Drawing box={{ x: 0, y: 0, width, height: 19 }}>
           <Shapes shapes={shapes} />
         </Drawing>

@@ -40,7 +40,7 @@ export function LevelDiagram(props: LevelDiagramProps) {
 
   const [holder, width] = useWidth(0, 2000, 0)
   const column = columnFor(width, levels.length)
-  const measures = useMemo(() => ({ ...sheetMeasures, column }), [column])
+  const measures = useMemo(() => ({ ...sheetMeasures, column, bay: bayFor(column) }), [column])
 
   const figures = useMemo<FigureOptions>(
     () => ({
@@ -154,11 +154,17 @@ export function LevelDiagram(props: LevelDiagramProps) {
 /** Widest that a bay's column grows on a wide page, px: beyond, neighbours would not be read together. */
 const WIDEST = 320
 
-/** Few nodes share the width of the page between them; many keep their size and scroll. */
+/** Narrowest that it becomes, px: the opening still holds the figure of its room. */
+const NARROWEST = 172
+
+/** Few nodes share the width of the page between them; those that do not fit become narrower, then scroll. */
 const columnFor = (width: number, nodes: number): number =>
-  Math.floor(
-    Math.min(WIDEST, Math.max(sheetMeasures.column, (width - sheetMeasures.gutter) / Math.max(1, nodes))),
-  )
+  width === 0
+    ? sheetMeasures.column
+    : Math.floor(Math.min(WIDEST, Math.max(NARROWEST, (width - sheetMeasures.gutter) / Math.max(1, nodes))))
+
+/** A narrow column takes from the opening, not from the figures beside it. */
+const bayFor = (column: number): number => sheetMeasures.bay - Math.max(0, sheetMeasures.column - column)
 
 const modes: { value: LevelMode; words: string }[] = [
   { value: 'share', words: 'Share of region' },

@@ -1,6 +1,7 @@
 import type { MouseEvent } from 'react'
 import type { LevelDrawing } from '#shared/drawings/level-diagram.ts'
 import { rect } from '#shared/drawings/shapes.ts'
+import { textBox } from '#shared/drawings/text-width.ts'
 import { chosenMark, markAt, type Choice } from './level-choice.ts'
 import { Drawing, Shapes } from './shape-view.tsx'
 
@@ -18,13 +19,18 @@ const PINNED_FROM = 8
 
 export function LevelStrip(props: StripProps) {
   const { drawing, gutter, column } = props
-  const { width, height } = drawing
-  if (drawing.bays.length < PINNED_FROM)
+  const { height } = drawing
+  if (drawing.bays.length < PINNED_FROM) {
+    // The figures of the last bay may be longer than what its column leaves them.
+    const texts = drawing.shapes.flatMap((shape) => (shape.type === 'text' ? [textBox(shape)] : []))
+    const width = Math.ceil(Math.max(drawing.width, ...texts.map((box) => box.x + box.width + 2)))
     return (
       <div className="d-strip">
         <Part {...props} box={{ x: 0, y: 0, width, height }} />
       </div>
     )
+  }
+  const { width } = drawing
   // The same drawing through three windows, of which the outer two stay in place.
   const first = gutter + column
   return (

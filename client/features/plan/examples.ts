@@ -35,7 +35,7 @@ export const firstExample: DesignDocument = {
   rails: { positive: 5, tolerance: 0.02 },
   shiftReference: { same: 'converter' },
   parts: { amplifier },
-  target: { limit: 0.002, per: 'span' },
+  target: { limit: 0.0025, per: 'span' },
 }
 
 export const examples: readonly Example[] = [

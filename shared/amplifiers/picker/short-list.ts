@@ -64,6 +64,9 @@ export const lowerOf = (members: Members, member: number): number =>
  * stands for all; equal costs are settled by the values in the order of the refs. The order in which picks are offered
  * does not matter.
  */
+/** Ways to one pair of end points that are kept before their costs decide: where nothing depends on β they are many. */
+const MOST_HITS = 10_000
+
 export class ShortList {
   /** Errors above this, V, cannot enter any more. */
   limit = Infinity
@@ -137,7 +140,9 @@ export class ShortList {
     // By error alone the choice among equal end points can wait; a demand or the cost cannot.
     const waits = !this.byCost && !this.allows
     if (waits && known >= 0) {
-      this.entries[known]?.hits.push(hit)
+      const hits = this.entries[known]?.hits ?? []
+      hits.push(hit)
+      if (hits.length >= MOST_HITS) this.settle()
       return
     }
     if (!waits) {

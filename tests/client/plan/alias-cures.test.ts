@@ -23,14 +23,14 @@ describe('what would reach the alias attenuation', () => {
     expect(aliasCures(filter({})).map(({ words }) => words.replaceAll('\u00a0', ' '))).toEqual([
       'Take 3 poles, Chebyshev',
       'Take 4 poles, Butterworth',
-      'Sample at 3.3 MHz',
+      'Sample at 3.25 MHz',
     ])
   })
 
   it('never samples slower than it has to', () => {
     const rate = aliasCures(filter({})).at(-1)?.changes[0]?.value as number
-    expect(rate).toBe(3.3e6)
-    expect(aliasCures(filter({ rateFor: 3.3e6 })).at(-1)?.changes[0]?.value).toBe(3.3e6)
+    expect(rate).toBe(3.25e6)
+    expect(aliasCures(filter({ rateFor: 3.3e6 })).at(-1)?.changes[0]?.value).toBe(3.25e6)
   })
 
   it('keeps the kind of sections that was chosen', () => {

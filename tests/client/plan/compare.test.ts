@@ -7,6 +7,7 @@ import {
   changeText,
   isBetter,
   splitCauses,
+  splitEffects,
 } from '#client/features/plan/compare/compare-words.ts'
 import { firstExample } from '#client/features/plan/examples.ts'
 import type { Effect } from '#shared/studies/compare.ts'
@@ -109,5 +110,18 @@ describe('the words of a comparison', () => {
     const { shown, idle } = splitCauses([cause('x', false), cause('y', true), cause('z', null)])
     expect(shown.map(({ path }) => path)).toEqual(['x', 'z'])
     expect(idle.map(({ path }) => path)).toEqual(['y'])
+  })
+})
+
+describe('answers that hardly moved', () => {
+  it('are kept apart from those that can be noticed', () => {
+    const of = (id: string, a: number, b: number) => ({ id, a, b, change: b - a }) as Effect
+    const { shown, faint } = splitEffects([
+      of('far', 1, 1.1),
+      of('near', 1, 1.0005),
+      of('from none', 0, 1e-9),
+    ])
+    expect(shown.map(({ id }) => id)).toEqual(['far', 'from none'])
+    expect(faint.map(({ id }) => id)).toEqual(['near'])
   })
 })

@@ -58,6 +58,14 @@ describe(`the kick of a sampling capacitor (${published?.source})`, () => {
     expect(above.text).toMatch(/there are 1.μs/)
   })
 
+  it('says that the budget does not hold what is left, where anything is', () => {
+    const words = 'The error budget does not hold this.'
+    const above = driveOf(direct(1.05 * limit, {}))
+    expect(above.settled).toBeGreaterThan(above.criterion)
+    expect(above.text).toContain(words)
+    expect(driveOf(direct(0.95 * limit, {})).text).not.toContain(words)
+  })
+
   it('is judged at one, a half and a quarter code, each a halving later', () => {
     expect(drive.criteria.map((c) => c.criterion)).toEqual([1, 0.5, 0.25])
     const [one, half, quarter] = drive.criteria.map((c) => c.needed ?? NaN)

@@ -43,10 +43,38 @@ describe('a filter of one pole', () => {
     expect(filter.floor).toBeNull()
   })
 
-  it('names the rate at which it would reach the attenuation', () => {
-    const wanted = filter.alias?.wanted ?? NaN
-    const needed = filter.corner * Math.sqrt(10 ** (wanted / 10) - 1)
-    expectClose(filter.alias?.rateFor ?? NaN, needed + 20, { relative: 1e-6 })
+  describe('and the rate at which it would reach the attenuation', () => {
+    const needed = filter.corner * Math.sqrt(10 ** ((filter.alias?.wanted ?? NaN) / 10) - 1) + 20
+    const at = (sampleRate: number, acquisitionTime?: number) =>
+      described({
+        converter: buildConverter({
+          sampleRate,
+          ...(acquisitionTime === undefined ? {} : { acquisitionTime }),
+        }),
+      })
+    const rateAt = (...given: Parameters<typeof at>) => at(...given).filter.alias?.rateFor
+
+    it('names it up to a hundred times the present one', () => {
+      expectClose(rateAt(needed / 99) ?? NaN, needed, { relative: 1e-6 })
+      expect(rateAt(needed / 101)).toBeNull()
+    })
+
+    it('names none at which the converter could not acquire', () => {
+      expectClose(rateAt(needed / 20, 0.999 / needed) ?? NaN, needed, { relative: 1e-6 })
+      expect(rateAt(needed / 20, 1.001 / needed)).toBeNull()
+    })
+
+    it('speaks of poles alone where there is none', () => {
+      const words = (acquisitionTime: number) => {
+        const found = at(needed / 20, acquisitionTime)
+        return filterFindings(found.design, found.filter)[0]
+      }
+      expect(words(0.999 / needed)?.text).toContain('The filter as it is would reach it at')
+      expect(words(1.001 / needed)?.text).toMatch(
+        /poles \((Butterworth|Chebyshev|Bessel)\) would reach it\.$/,
+      )
+      expect(words(1.001 / needed)?.numbers.rateFor).toBeUndefined()
+    })
   })
 
   it('has its band from the extremes of both parts over temperature', () => {
@@ -184,6 +212,13 @@ describe('an attenuation that is not reached', () => {
     // Six poles at their own corner: (10^20 − 1)^(1/12) times that.
     const corner = 20 / (1 / 0.997 ** 2 - 1) ** (1 / 12)
     expectClose(finding?.numbers.sixAt ?? NaN, corner * (10 ** 20 - 1) ** (1 / 12) + 20, { relative: 1e-6 })
+    const slow = described({
+      rules: { aliasAttenuation: 200 },
+      converter: buildConverter({ acquisitionTime: 0.9 / 1000 }),
+    })
+    const [bound] = filterFindings(slow.design, slow.filter)
+    expect(bound?.numbers.sixAt).toBeUndefined()
+    expect(bound?.text).toMatch(/do not reach it at this rate\.$/)
     const plain = described({})
     expect(plain.filter.alias?.state).toBe('tight')
     expect(filterFindings(plain.design, plain.filter)[0]?.severity).toBe('caution')

@@ -170,10 +170,23 @@ describe('every curve plot', () => {
 
   it('keeps names of curves apart that end at the same height', () => {
     const names = layoutCurvePlot(plots.noise).shapes.flatMap((s) =>
-      s.type === 'text' && (s.style === 'key-text' || s.style === 'line-name') ? [textBox(s)] : [],
+      s.type === 'text' && s.anchor === 'start' && (s.style === 'key-text' || s.style === 'line-name')
+        ? [textBox(s)]
+        : [],
     )
     expect(names).toHaveLength(5)
     const tops = names.map(({ y }) => y).sort((a, b) => a - b)
     tops.slice(1).forEach((y, i) => expect(y - (tops[i] ?? 0)).toBeGreaterThanOrEqual(12))
+  })
+
+  it('starts a step at zero with four ticks or more', () => {
+    for (const width of [320, 560, 900]) {
+      const { shapes } = layoutCurvePlot(plots.step, { width })
+      const words = shapes.flatMap((s) =>
+        s.type === 'text' && s.style === 'axis-text' && s.anchor === 'middle' ? [s.text] : [],
+      )
+      expect(words[0]).toBe('0')
+      expect(words.length).toBeGreaterThanOrEqual(4)
+    }
   })
 })

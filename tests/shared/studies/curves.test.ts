@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { computeDynamics } from '#shared/budget/dynamics.ts'
+import { describeFilter } from '#shared/budget/filter-plan.ts'
 import { summariseNoise } from '#shared/budget/noise.ts'
 import { checkStability } from '#shared/budget/stability.ts'
 import type { ChainSpec } from '#shared/design/chain.ts'
@@ -116,6 +117,41 @@ describe.each(chains)('curves of %s', (id) => {
 })
 
 describe('the band of a filter', () => {
+  describe.each([
+    ['rc', 1],
+    ['sallen-key', 2],
+    ['sallen-key', 5],
+    ['multiple-feedback', 4],
+  ] as const)('of kind %s and order %i', (kind, order) => {
+    // a corner far below what the stage before does by itself
+    const document = buildDesign({ choose: { filter: { kind, order, corner: 500 } } })
+    const { design, spec, curves } = prepare('non-inverting-up', document)
+    const { frequency: x, band } = curves.bode
+    const { low, high } = band ?? { low: [], high: [] }
+    const { band: figures } = describeFilter(design, spec)
+
+    it('falls by 3 dB where the figures say that the corner may lie', () => {
+      expect(figures.corner.high / figures.corner.low).toBeGreaterThan(1.1)
+      expectClose(at({ x, y: low }, figures.corner.low), -3.01, { absolute: 0.15 })
+      expectClose(at({ x, y: high }, figures.corner.high), -3.01, { absolute: 0.15 })
+    })
+
+    it('has the attenuation of the figures where they state one', () => {
+      const reached = { low: -at({ x, y: high }, 980), high: -at({ x, y: low }, 980) }
+      expectClose(reached.low, figures.reached?.low ?? NaN, { absolute: 0.1 })
+      expectClose(reached.high, figures.reached?.high ?? NaN, { absolute: 0.1 })
+    })
+  })
+
+  it('is absent where its parts are exact', () => {
+    const exact = { tolerance: 0, drift: 0, ageing: 0 }
+    const document = buildDesign({
+      parts: { resistors: exact, capacitors: { tolerance: 0, drift: 0 } },
+      choose: { filter: { kind: 'sallen-key', order: 2, corner: 500 } },
+    })
+    expect(prepare('non-inverting-up', document).curves.bode.band).toBeNull()
+  })
+
   it('is absent where the chain has none', () => {
     const document = buildDesign({
       sensor: buildSensor(0.2, 2.2),

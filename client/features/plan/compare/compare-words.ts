@@ -82,3 +82,10 @@ export function splitCauses(causes: readonly Cause[]): { shown: Cause[]; idle: C
     idle: causes.filter(({ idle }) => idle === true),
   }
 }
+
+/** Changes too small to be noticed are kept apart: under a thousandth of their figure. */
+export function splitEffects(effects: readonly Effect[]): { shown: Effect[]; faint: Effect[] } {
+  const isFaint = ({ a, change }: Effect) =>
+    change !== null && typeof a === 'number' && a !== 0 && Math.abs(change / a) < HARDLY
+  return { shown: effects.filter((effect) => !isFaint(effect)), faint: effects.filter(isFaint) }
+}

@@ -4,7 +4,15 @@ import type { Cause, Comparison, Effect } from '#shared/studies/compare.ts'
 import type { DraftDocument } from '../draft/paths.ts'
 import { usePlanner } from '../planner-context.tsx'
 import { Fold } from '../steps/fold.tsx'
-import { answerText, causeLabel, causeText, changeText, isBetter, splitCauses } from './compare-words.ts'
+import {
+  answerText,
+  causeLabel,
+  causeText,
+  changeText,
+  isBetter,
+  splitCauses,
+  splitEffects,
+} from './compare-words.ts'
 import { gutterOf, LinkLines } from './link-lines.tsx'
 
 interface ComparisonTableProps {
@@ -14,7 +22,8 @@ interface ComparisonTableProps {
 
 /** Three columns: what, kept, now. Causes first, then the answers that moved, joined where one edit alone explains it. */
 export function ComparisonTable({ comparison, kept }: ComparisonTableProps) {
-  const { causes, effects, untried } = comparison
+  const { causes, untried } = comparison
+  const { shown: effects, faint } = splitEffects(comparison.effects)
   const { shown, idle } = splitCauses(causes)
   const links = useMemo(() => linksOf(comparison), [comparison])
   return (
@@ -50,7 +59,7 @@ export function ComparisonTable({ comparison, kept }: ComparisonTableProps) {
               <tr>
                 <th scope="rowgroup" colSpan={3} className="compare-group">
                   {effects.length === 0
-                    ? 'No answer moved'
+                    ? 'No answer moved noticeably'
                     : effects.length === 1
                       ? '1 answer moved'
                       : `${effects.length} answers moved`}
@@ -68,6 +77,32 @@ export function ComparisonTable({ comparison, kept }: ComparisonTableProps) {
           {untried === 1 ? '1 edit was' : `${untried} edits were`} not tried alone: what they move is not
           joined to them.
         </p>
+      )}
+      {faint.length > 0 && (
+        <Fold
+          title={
+            faint.length === 1
+              ? '1 answer not noticeably affected'
+              : `${faint.length} answers not noticeably affected`
+          }
+          say="moved by less than 0.1 % of their figure"
+        >
+          <table className="plan-table compare-table">
+            <caption className="sr-only">Answers that moved by less than 0.1 %</caption>
+            <thead>
+              <tr>
+                <th scope="col">What</th>
+                <th scope="col">Kept</th>
+                <th scope="col">Now</th>
+              </tr>
+            </thead>
+            <tbody>
+              {faint.map((effect) => (
+                <EffectRow key={effect.id} effect={effect} comparison={comparison} />
+              ))}
+            </tbody>
+          </table>
+        </Fold>
       )}
       {idle.length > 0 && (
         <Fold title={idle.length === 1 ? '1 edit without effect' : `${idle.length} edits without effect`}>
@@ -98,9 +133,12 @@ const GAP = 5
 const causeKey = (path: string): string => `cause ${path}`
 const effectKey = (id: string): string => `effect ${id}`
 
-function linksOf({ causes, links }: Comparison) {
+function linksOf({ causes, effects: all, links }: Comparison) {
+  const inSight = new Set(splitEffects(all).shown.map(({ id }) => id))
   return causes.flatMap(({ path }) => {
-    const effects = links.filter((link) => link.path === path).map(({ effect }) => effectKey(effect))
+    const effects = links
+      .filter((link) => link.path === path && inSight.has(link.effect))
+      .map(({ effect }) => effectKey(effect))
     return effects.length === 0 ? [] : [{ cause: causeKey(path), effects }]
   })
 }
@@ -138,7 +176,7 @@ function EffectRow({ effect, comparison }: { effect: Effect; comparison: Compari
     <tr data-link={effectKey(effect.id)}>
       <th scope="row">
         {effect.label}
-        {by.length > 0 && (
+        {by.length > 0 && comparison.causes.length > 1 && (
           <small>by {by.map(({ path }) => causeLabel(path, sensorKind)).join(', or by ')} alone</small>
         )}
       </th>

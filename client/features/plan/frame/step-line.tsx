@@ -1,5 +1,5 @@
 import { Link } from 'react-router-dom'
-import { TickMark } from '#client/components/marks.tsx'
+import { RoomMark, TickMark } from '#client/components/marks.tsx'
 import { usePlanner } from '../planner-context.tsx'
 import { isAwaited } from '../session/plan-session.ts'
 import { answerSteps } from '../words/step-answers.ts'
@@ -22,6 +22,7 @@ export function StepLine() {
                 <span className="sr-only">complete</span>
               </>
             )}
+            {answer.state === 'noted' && <RoomMark state="tight" />}
             <small>{answer.text}</small>
           </Link>
         </li>

@@ -2,8 +2,9 @@ import { useEffect, useRef, useState } from 'react'
 import { Button } from '#client/components/buttons.tsx'
 import { RoomMark, roomTone } from '#client/components/marks.tsx'
 import { runCheck, type CheckProgress } from '#client/lib/check-client.ts'
-
+import { withPower } from '#client/lib/powers.ts'
 import type { IndependentCheck } from '#shared/design/plan.ts'
+import type { Table } from '#shared/note/types.ts'
 import { toCheckTable } from '#shared/note/quality-tables.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { usePlanner } from '../planner-context.tsx'
@@ -81,12 +82,18 @@ export function CheckPanel() {
             <RoomMark state={run.check.ok ? 'clear' : 'over'} /> <b>{verdictWords(run.check)}</b>
             {run.document !== planned?.document && ' These are figures of the design before the last change.'}
           </p>
-          <NoteTable caption="Plan against simulator" table={toCheckTable(run.check)} />
+          <NoteTable caption="Plan against simulator" table={withPowers(toCheckTable(run.check))} />
         </div>
       )}
     </section>
   )
 }
+
+/** Differences run over many decades. */
+const withPowers = (table: Table): Table => ({
+  ...table,
+  rows: table.rows.map((row) => ({ ...row, cells: row.cells.map(withPower) })),
+})
 
 function progressWords(progress: CheckProgress | null): string {
   if (!progress) return 'Being started.'

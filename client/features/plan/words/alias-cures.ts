@@ -1,4 +1,5 @@
 import type { FilterPlan, FilterResponse } from '#shared/design/plan.ts'
+import { responseNames } from '#shared/filters/prototypes.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import type { Change } from '../draft/draft-state.ts'
 
@@ -9,17 +10,11 @@ export interface AliasCure {
   changes: Change[]
 }
 
-const names: Record<FilterResponse, string> = {
-  butterworth: 'Butterworth',
-  bessel: 'Bessel',
-  chebyshev: 'Chebyshev',
-}
-
 /**
  * What would do: for each response the fewest poles that reach it at this rate, fewest first, and the sample rate at
  * which the filter as it is reaches it. Empty where it is reached already.
  */
-export function aliasCures({ alias, kind, order, response }: FilterPlan): AliasCure[] {
+export function aliasCures({ alias, kind, order, response, digital }: FilterPlan): AliasCure[] {
   if (!alias || alias.state === 'clear') return []
   const sections = kind === 'multiple-feedback' ? kind : 'sallen-key'
   const byOrder = (Object.entries(alias.orders) as [FilterResponse, number | null][])
@@ -27,7 +22,7 @@ export function aliasCures({ alias, kind, order, response }: FilterPlan): AliasC
     .filter(({ name, poles }) => !(poles === order && name === response))
     .sort((a, b) => a.poles - b.poles)
     .map(({ name, poles }): AliasCure => ({
-      words: `Take ${poles === 1 ? 'one pole' : `${poles} poles, ${names[name]}`}`,
+      words: `Take ${poles === 1 ? 'one pole' : `${poles} poles, ${responseNames[name]}`}`,
       label: 'Order of the filter',
       changes:
         poles === 1
@@ -50,15 +45,15 @@ export function aliasCures({ alias, kind, order, response }: FilterPlan): AliasC
       : [
           {
             words: `Sample at ${formatQuantity(rate, 'Hz', { digits: 3 })}`,
-            label: 'Sample rate',
-            changes: [{ path: 'converter.sampleRate', value: rate }],
+            label: digital ? 'Modulator rate' : 'Sample rate',
+            changes: [{ path: digital ? 'converter.modulatorRate' : 'converter.sampleRate', value: rate }],
           },
         ]),
   ]
 }
 
-/** Two digits, never less than what is needed. */
+/** Three digits, never less than what is needed. */
 function upTo(rate: number): number {
-  const power = 10 ** (Math.floor(Math.log10(rate)) - 1)
-  return Number((Math.ceil(rate / power - 1e-9) * power).toPrecision(2))
+  const power = 10 ** (Math.floor(Math.log10(rate)) - 2)
+  return Number((Math.ceil(rate / power - 1e-9) * power).toPrecision(3))
 }

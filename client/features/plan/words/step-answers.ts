@@ -1,8 +1,8 @@
 import type { Candidate } from '#shared/design/plan.ts'
 import { formatNumber, formatQuantity, formatRange } from '#shared/units/format-quantity.ts'
-import { upward } from '#shared/note/figures.ts'
 import { sensorKinds } from '#shared/sensors/index.ts'
 import { getAt, numberAt, textAt, type DraftDocument } from '../draft/paths.ts'
+import { totalText } from '../steps/errors/budget-words.ts'
 import { pressing, type ShownFinding } from './findings.ts'
 import { steps, type StepId } from './steps.ts'
 
@@ -10,8 +10,8 @@ import { steps, type StepId } from './steps.ts'
 export interface StepAnswer {
   id: StepId
   text: string
-  /** `over` and `open` ask for work; `done` is complete. */
-  state: 'done' | 'over' | 'open' | 'tight' | 'awaited'
+  /** `over` and `open` ask for work; `noted` has something that should be known; `done` is complete. */
+  state: 'done' | 'over' | 'open' | 'tight' | 'noted' | 'awaited'
 }
 
 interface Situation {
@@ -37,7 +37,11 @@ export function answerSteps(situation: Situation): StepAnswer[] {
     if (open.length > 0) return { id, state: 'open', text: counted(open.length, 'open') }
     const text = words[id](situation.document, situation.candidate)
     if (text === null) return { id, state: 'open', text: planned.has(id) ? 'needs an arrangement' : 'open' }
-    return { id, state: own.length > 0 ? 'tight' : 'done', text }
+    if (own.length > 0) return { id, state: 'tight', text }
+    const cautions = situation.findings.filter((f) => f.step === id && f.severity === 'caution').length
+    return cautions > 0
+      ? { id, state: 'noted', text: `${counted(cautions, 'to note')}: ${text}` }
+      : { id, state: 'done', text }
   })
 }
 
@@ -93,6 +97,6 @@ const words: Record<Exclude<StepId, 'review'>, Words> = {
     const unit = textAt(document, 'sensor.quantity.unit')
     const total = totals[target?.state ?? 'calibrated'].expanded / perQuantity
     const against = target ? (target.met ? ', target met' : ', target missed') : ''
-    return `±${upward(total, unit)}${against}`
+    return `±${totalText(total, unit)}${against}`
   },
 }

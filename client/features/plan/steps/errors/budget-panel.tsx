@@ -4,7 +4,6 @@ import { RoomMark, roomTone } from '#client/components/marks.tsx'
 import type { Budget, Candidate, ErrorState } from '#shared/design/plan.ts'
 import type { Design } from '#shared/design/schema.ts'
 import { errorBars } from '#shared/drawings/error-chart.ts'
-import { upward } from '#shared/note/figures.ts'
 import { stateWords, toBudgetTable, toTotalsTable, type Scale } from '#shared/note/quality-tables.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { usePlanner } from '../../planner-context.tsx'
@@ -13,7 +12,16 @@ import { Fold } from '../fold.tsx'
 import { NoteTable } from '../note-table.tsx'
 import { Segments } from '../segments.tsx'
 import { TableRegion } from '../step-parts.tsx'
-import { dominantOf, judgedState, lineDetails, verdictOf } from './budget-words.ts'
+import { sameDigits } from './totals.ts'
+import {
+  BUDGET_VERDICT,
+  dominantOf,
+  judgedState,
+  lineDetails,
+  totalShare,
+  totalText,
+  verdictOf,
+} from './budget-words.ts'
 
 interface BudgetPanelProps {
   budget: Budget
@@ -40,7 +48,7 @@ export function BudgetPanel({ budget, scale, candidate, design }: BudgetPanelPro
   return (
     <section aria-label="Error budget">
       <div className="verdict-head">
-        <p className={roomTone(verdict.state)}>
+        <p id={BUDGET_VERDICT} tabIndex={-1} className={roomTone(verdict.state)}>
           <RoomMark state={verdict.state} /> <b>{verdict.head}</b>
         </p>
         <p>
@@ -77,7 +85,10 @@ export function BudgetPanel({ budget, scale, candidate, design }: BudgetPanelPro
         onOpen={(bar) => goTo(bar.path ?? leadToPart(bar.source, candidate.components ?? []))}
       />
       <Fold title="The three states side by side" say={sideBySide(budget, scale)}>
-        <NoteTable caption="Totals in each state" table={toTotalsTable(budget, scale)} />
+        <NoteTable
+          caption="Totals in each state"
+          table={sameDigits(toTotalsTable(budget, scale), budget, scale)}
+        />
       </Fold>
       <Fold
         title="Every term"
@@ -96,7 +107,7 @@ const sideBySide = (budget: Budget, { perQuantity, unit }: Scale): string =>
   states
     .map(
       ({ value, words }) =>
-        `${words.toLowerCase()} ±${upward(budget.totals[value].expanded / perQuantity, unit)}`,
+        `${words.toLowerCase()} ±${totalText(budget.totals[value].expanded / perQuantity, unit)}`,
     )
     .join(', ')
 
@@ -140,18 +151,10 @@ function Totals({ budget, scale, state }: { budget: Budget; scale: Scale; state:
           {rows.map(({ name, volts }) => (
             <tr key={name}>
               <th scope="row">{name}</th>
-              <td className="n">{upward(volts / scale.perQuantity, scale.unit)}</td>
-              <td className="n">{upward(volts, 'V')}</td>
-              <td className="n">
-                {formatQuantity(volts / scale.lsb, '', { digits: 2, rounding: 'outward' })}
-              </td>
-              <td className="n">
-                {formatQuantity(volts / scale.span, '', {
-                  digits: 2,
-                  display: 'percent',
-                  rounding: 'outward',
-                })}
-              </td>
+              <td className="n">{totalText(volts / scale.perQuantity, scale.unit)}</td>
+              <td className="n">{totalText(volts, 'V')}</td>
+              <td className="n">{totalText(volts / scale.lsb, '')}</td>
+              <td className="n">{totalShare(volts / scale.span)}</td>
             </tr>
           ))}
         </tbody>

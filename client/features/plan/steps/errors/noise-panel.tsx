@@ -9,6 +9,9 @@ import { CurvesPart } from '../curves-part.tsx'
 import { Fold } from '../fold.tsx'
 import { NoteTable } from '../note-table.tsx'
 
+/** 0 °C in K. */
+const KELVIN = 273.15
+
 /** Noise over the real response: how many bits it leaves, and who makes it. */
 export function NoisePanel({ noise }: { noise: NoiseSummary }) {
   const { decimalSign = '.' } = usePreferences()
@@ -45,7 +48,7 @@ export function NoisePanel({ noise }: { noise: NoiseSummary }) {
       </dl>
       <Fold
         title="Sources and spectrum"
-        say={`from ${figure(noise.from, 'Hz')} up, at ${figure(noise.temperature, 'K')}`}
+        say={`from ${figure(noise.from, 'Hz')} up, at ${formatQuantity(noise.temperature - KELVIN, '°C', { digits: 3 })}`}
       >
         <NoteTable caption="Sources of noise, largest first" table={toNoiseTable(noise)} />
         <CurvesPart what="The noise spectrum">
@@ -54,7 +57,11 @@ export function NoisePanel({ noise }: { noise: NoiseSummary }) {
               title="Noise spectrum"
               caption="density at the converter, all sources and the largest few"
               named={noisePlot(curves.noise, decimalSign)}
-            />
+            >
+              <p className="field-note">
+                Converter noise and quantisation are known as one figure each and have no spectrum here.
+              </p>
+            </CurveFigure>
           )}
         </CurvesPart>
       </Fold>

@@ -6,10 +6,14 @@ import type { Design } from '#shared/design/schema.ts'
 import { formatQuantity } from '#shared/units/format-quantity.ts'
 import { usePlanner } from '../../planner-context.tsx'
 import { aliasCures } from '../../words/alias-cures.ts'
+import { useTaking } from '../use-taking.ts'
+
+const ALIAS_VERDICT = 'alias-verdict'
 
 /** What folds into the band against what is wanted, and what would do. */
 export function AliasPanel({ filter, design }: { filter: FilterPlan; design: Design }) {
-  const { stepHref, dispatch, readOnly } = usePlanner()
+  const { stepHref, readOnly } = usePlanner()
+  const take = useTaking(ALIAS_VERDICT)
   const { alias } = filter
   if (!alias)
     return (
@@ -30,7 +34,7 @@ export function AliasPanel({ filter, design }: { filter: FilterPlan; design: Des
   const enough = alias.state === 'clear'
   return (
     <section aria-label="Alias attenuation" className="verdict-head">
-      <p className={roomTone(alias.state)}>
+      <p id={ALIAS_VERDICT} tabIndex={-1} className={roomTone(alias.state)}>
         <RoomMark state={alias.state} />{' '}
         <b>
           {decibels(alias.reached, 'down')} of {decibels(alias.wanted, 'up')} wanted
@@ -43,15 +47,14 @@ export function AliasPanel({ filter, design }: { filter: FilterPlan; design: Des
         {!enough &&
           Object.values(alias.orders).every((order) => order === null) &&
           'Six poles do not reach it at this rate. '}
-        {!enough && alias.rateFor === null && 'No sample rate that was looked at does it with this filter. '}
+        {!enough &&
+          alias.rateFor === null &&
+          'No rate within this converter’s reach does it with this filter. '}
       </p>
       {cures.length > 0 && readOnly === null && (
         <p className="plan-takes">
           {cures.map((cure) => (
-            <TextButton
-              key={cure.words}
-              onClick={() => dispatch({ type: 'set', changes: cure.changes, label: cure.label })}
-            >
+            <TextButton key={cure.words} onClick={() => take(cure.changes, cure.label, cure.words)}>
               {cure.words}
             </TextButton>
           ))}

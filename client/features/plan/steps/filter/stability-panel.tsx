@@ -13,23 +13,29 @@ import { CurvesPart } from '../curves-part.tsx'
 import { Fold } from '../fold.tsx'
 import { NoteTable } from '../note-table.tsx'
 import { Segments } from '../segments.tsx'
+import { useTaking } from '../use-taking.ts'
+
+const STABILITY_VERDICT = 'stability-verdict'
 
 /** Phase margin of every amplifier in the real network, and what would steady it. */
 export function StabilityPanel({ entries }: { entries: readonly StabilityEntry[] }) {
-  const { state, dispatch, readOnly, candidate } = usePlanner()
+  const { state, readOnly, candidate } = usePlanner()
+  const takeChanges = useTaking(STABILITY_VERDICT)
   const take = (cure: Cure) =>
-    dispatch({
-      type: 'set',
-      label: `${cure.ref} for stability`,
-      changes: Object.entries(cure.values).flatMap(([ref, value]) => {
+    takeChanges(
+      Object.entries(cure.values).flatMap(([ref, value]) => {
         const path = `choose.values.${ref}`
         return [{ path, value }, ...companionsOf(path, value, state.document, candidate?.arrangement)]
       }),
-    })
+      `${cure.ref} for stability`,
+      `${formatQuantity(cure.value, cure.kind === 'series-resistor' ? 'Ω' : 'F')} taken for ${cure.ref}`,
+    )
   const cured = entries.filter((entry) => entry.state !== 'clear')
   return (
     <section aria-label="Stability">
-      <h2>Stability</h2>
+      <h2 id={STABILITY_VERDICT} tabIndex={-1}>
+        Stability
+      </h2>
       <NoteTable
         caption="Phase margin of each amplifier; under 45° is tight, under 30° over"
         table={toStabilityTable(entries)}
