@@ -128,7 +128,7 @@ describe('a converter with a digital filter', () => {
     })
     const candidate = planDesign(document).candidates[0]
     const prepared = candidate && prepareCandidate(document, candidate)
-    expect(prepared).not.toBeNull()
+    expect(prepared?.candidate).toBe(candidate)
     if (!prepared) return
     const check = await runCheck(prepared, simulator)
     expect(check.lines.filter((line) => !line.ok)).toEqual([])
