@@ -234,10 +234,9 @@ function steady(
   const exists = trial.stages.some((s) => isGiven(design, s.arrangement, s.need))
   const added = exists ? [] : stability.filter((entry) => capacitorFor(entry) !== undefined)
   if (added.length === 0) return { spec, stability, added }
-  const compensation = Object.assign({}, ...added.map((entry) => capacitorFor(entry)?.values)) as Record<
-    string,
-    number
-  >
+  const compensation = Object.fromEntries(
+    added.flatMap((entry) => Object.entries(capacitorFor(entry)?.values ?? {})),
+  )
   const firm = { ...spec, compensation }
   return { spec: firm, stability: checkStability(design, firm), added }
 }

@@ -1,4 +1,4 @@
-import { useMemo } from 'react'
+import { useMemo, type ReactNode } from 'react'
 import { TextButton } from '#client/components/buttons.tsx'
 import type { Cause, Comparison, Effect } from '#shared/studies/compare.ts'
 import type { DraftDocument } from '../draft/paths.ts'
@@ -87,43 +87,40 @@ export function ComparisonTable({ comparison, kept }: ComparisonTableProps) {
           }
           say="moved by less than 0.1 % of their figure"
         >
-          <table className="plan-table compare-table">
-            <caption className="sr-only">Answers that moved by less than 0.1 %</caption>
-            <thead>
-              <tr>
-                <th scope="col">What</th>
-                <th scope="col">Kept</th>
-                <th scope="col">Now</th>
-              </tr>
-            </thead>
-            <tbody>
-              {faint.map((effect) => (
-                <EffectRow key={effect.id} effect={effect} comparison={comparison} />
-              ))}
-            </tbody>
-          </table>
+          <FoldedTable caption="Answers that moved by less than 0.1 %">
+            {faint.map((effect) => (
+              <EffectRow key={effect.id} effect={effect} comparison={comparison} />
+            ))}
+          </FoldedTable>
         </Fold>
       )}
       {idle.length > 0 && (
         <Fold title={idle.length === 1 ? '1 edit without effect' : `${idle.length} edits without effect`}>
-          <table className="plan-table compare-table">
-            <caption className="sr-only">Edits that move no answer by themselves</caption>
-            <thead>
-              <tr>
-                <th scope="col">What</th>
-                <th scope="col">Kept</th>
-                <th scope="col">Now</th>
-              </tr>
-            </thead>
-            <tbody>
-              {idle.map((cause) => (
-                <CauseRow key={cause.path} cause={cause} kept={kept} />
-              ))}
-            </tbody>
-          </table>
+          <FoldedTable caption="Edits that move no answer by themselves">
+            {idle.map((cause) => (
+              <CauseRow key={cause.path} cause={cause} kept={kept} />
+            ))}
+          </FoldedTable>
         </Fold>
       )}
     </>
+  )
+}
+
+/** A table of the same columns inside a fold. */
+function FoldedTable({ caption, children }: { caption: string; children: ReactNode }) {
+  return (
+    <table className="plan-table compare-table">
+      <caption className="sr-only">{caption}</caption>
+      <thead>
+        <tr>
+          <th scope="col">What</th>
+          <th scope="col">Kept</th>
+          <th scope="col">Now</th>
+        </tr>
+      </thead>
+      <tbody>{children}</tbody>
+    </table>
   )
 }
 
